@@ -37,6 +37,12 @@ type PerMetre float64
 // 0 and 1 an ellipse that flattens outwards, 0 a parabola. The zero value is a parabola.
 type ShapeFactor float64
 
+// Asphericity is the asphericity Q of a conic, dimensionless: p = 1 + Q. The zero value is a sphere.
+type Asphericity float64
+
+// Eccentricity is the eccentricity e of a prolate conic, dimensionless: p = 1 - e². The zero value is a sphere.
+type Eccentricity float64
+
 // Permeability is an oxygen permeability Dk, in 10⁻¹¹ (cm²/s)(mL O2/(mL·mmHg)).
 type Permeability float64
 
@@ -161,6 +167,21 @@ func KeratometricRadius(p Dioptre, n Index) Millimetre {
 //
 // Source: definition of reduced distance.
 func (m Millimetre) ReducedMetres(n Index) float64 { return float64(m) / (1000 * float64(n)) }
+
+// ShapeFactor is p = 1 + Q.
+//
+// Source: ISO 18369-1.
+func (q Asphericity) ShapeFactor() ShapeFactor { return ShapeFactor(1 + q) }
+
+// ShapeFactor is p = 1 - e².
+//
+// Source: ISO 18369-1.
+func (e Eccentricity) ShapeFactor() ShapeFactor { return ShapeFactor(1 - float64(e*e)) }
+
+// Asphericity is Q = p - 1.
+//
+// Source: ISO 18369-1.
+func (p ShapeFactor) Asphericity() Asphericity { return Asphericity(p - 1) }
 
 // Transmissibility is Dk/t for the thickness t > 0: Dk/(10 t), t in millimetres.
 //

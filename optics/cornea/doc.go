@@ -1,0 +1,2 @@
+// Package cornea turns keratometer readings into the principal radii and the shape of a cornea.
+package cornea
