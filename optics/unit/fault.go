@@ -51,3 +51,34 @@ func (e *ImpossibleError) Error() string {
 	}
 	return s
 }
+
+// Within puts a prefix before the paths of a FieldError or an ImpossibleError, joined by a dot. Another error is
+// returned as it is.
+//
+// Source: definition.
+func Within(prefix string, err error) error {
+	switch e := err.(type) {
+	case *FieldError:
+		w := *e
+		w.Field = join(prefix, e.Field)
+		return &w
+	case *ImpossibleError:
+		w := *e
+		w.Fields = make([]string, len(e.Fields))
+		for i, f := range e.Fields {
+			w.Fields[i] = join(prefix, f)
+		}
+		return &w
+	}
+	return err
+}
+
+func join(prefix, field string) string {
+	switch {
+	case prefix == "":
+		return field
+	case field == "":
+		return prefix
+	}
+	return prefix + "." + field
+}
