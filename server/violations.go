@@ -1,0 +1,118 @@
+package server
+
+import (
+	"errors"
+	"strings"
+
+	"google.golang.org/genproto/googleapis/rpc/errdetails"
+	"google.golang.org/grpc/codes"
+	"google.golang.org/grpc/status"
+	"google.golang.org/protobuf/protoadapt"
+
+	"meniscus.example/optics/unit"
+)
+
+// domain is the domain of every ErrorInfo.
+const domain = "meniscus.example"
+
+// The reasons of every ErrorInfo. They are stable: clients may switch on them.
+const (
+	reasonInvalidFields  = "INVALID_FIELDS"
+	reasonImpossibleLens = "IMPOSSIBLE_LENS"
+	reasonNotServed      = "NOT_SERVED"
+	reasonDeadline       = "DEADLINE_EXCEEDED"
+	reasonCancelled      = "CANCELLED"
+	reasonInternal       = "INTERNAL"
+)
+
+// violations are the faults of one request, in the order in which they were found.
+type violations struct {
+	list []unit.FieldError
+}
+
+func (v *violations) add(field, problem, looksLike string) {
+	v.list = append(v.list, unit.FieldError{Field: field, Problem: problem, LooksLike: looksLike})
+}
+
+// has reports whether a fault is known of the field itself, of a message that holds it, or of a field that it
+// holds.
+func (v *violations) has(field string) bool {
+	for i := range v.list {
+		known := v.list[i].Field
+		if known == field || strings.HasPrefix(field, known+".") || strings.HasPrefix(known, field+".") {
+			return true
+		}
+	}
+	return false
+}
+
+// merge adds what the core found, but for fields of which a fault is known already: a number outside its limits is
+// named once.
+func (v *violations) merge(faults []error) {
+	for _, err := range faults {
+		var f *unit.FieldError
+		if errors.As(err, &f) && !v.has(f.Field) {
+			v.list = append(v.list, *f)
+		}
+	}
+}
+
+// err is nil without faults, else INVALID_ARGUMENT with all of them.
+func (v *violations) err() error {
+	if len(v.list) == 0 {
+		return nil
+	}
+	bad := &errdetails.BadRequest{}
+	text := make([]string, len(v.list))
+	for i := range v.list {
+		f := v.list[i]
+		text[i] = f.Error()
+		field := f.Field
+		f.Field = ""
+		bad.FieldViolations = append(bad.FieldViolations, &errdetails.BadRequest_FieldViolation{
+			Field:       field,
+			Description: f.Error(),
+		})
+	}
+	return failure(codes.InvalidArgument, reasonInvalidFields, strings.Join(text, " | "), bad)
+}
+
+// statusFrom is the status of an error of the core: an error of the caller's where it is one, else INTERNAL, which says nothing
+// of the cause.
+func statusFrom(err error) error {
+	var impossible *unit.ImpossibleError
+	var field *unit.FieldError
+	switch {
+	case errors.As(err, &impossible):
+		says := *impossible
+		says.Fields = nil
+		p := &errdetails.PreconditionFailure{}
+		for _, f := range impossible.Fields {
+			p.Violations = append(p.Violations, &errdetails.PreconditionFailure_Violation{
+				Type:        reasonImpossibleLens,
+				Subject:     f,
+				Description: says.Error(),
+			})
+		}
+		return failure(codes.FailedPrecondition, reasonImpossibleLens, impossible.Error(), p)
+	case errors.As(err, &field):
+		v := violations{list: []unit.FieldError{*field}}
+		return v.err()
+	}
+	return internal()
+}
+
+// internal is the status of a mistake of ours. The cause goes to the log, never to the caller.
+func internal() error {
+	return failure(codes.Internal, reasonInternal, "internal error: the request was not answered; please report it with its x-request-id")
+}
+
+// failure is a status with one ErrorInfo and the details.
+func failure(code codes.Code, reason, message string, details ...protoadapt.MessageV1) error {
+	details = append(details, &errdetails.ErrorInfo{Reason: reason, Domain: domain})
+	st, err := status.New(code, message).WithDetails(details...)
+	if err != nil {
+		return status.Error(code, message)
+	}
+	return st.Err()
+}
