@@ -64,9 +64,10 @@ func NewSphereCylinder(p Prescription) (SphereCylinder, []error) {
 // stands that far before the cornea. It is not the refraction at the cornea, and does not convert to it
 // but by Ocular.
 type SpectacleRefraction struct {
-	power  PowerVector
-	vertex unit.Millimetre
-	ocular PowerVector
+	written SphereCylinder
+	power   PowerVector
+	vertex  unit.Millimetre
+	ocular  PowerVector
 	// assumed is true where no vertex distance was given.
 	assumed bool
 }
@@ -108,7 +109,7 @@ func NewSpectacleRefraction(p Prescription, vertex unit.Optional[unit.Millimetre
 		}
 		d = AssumedVertex
 	}
-	s := SpectacleRefraction{power: sc.Vector(), vertex: d + 0, assumed: !given}
+	s := SpectacleRefraction{written: sc, power: sc.Vector(), vertex: d + 0, assumed: !given}
 	var err error
 	if s.ocular, err = s.power.Downstream(s.vertex, unit.Air); err != nil {
 		return SpectacleRefraction{}, []error{&unit.FieldError{
@@ -119,6 +120,11 @@ func NewSpectacleRefraction(p Prescription, vertex unit.Optional[unit.Millimetre
 	}
 	return s, nil
 }
+
+// Written is the power as it was written, with an axis of 0 as 180.
+//
+// Source: definition.
+func (s SpectacleRefraction) Written() SphereCylinder { return s.written }
 
 // Power is the power at the spectacle plane.
 //
