@@ -6,6 +6,7 @@ import (
 
 	"meniscus.example/optics/surface"
 	"meniscus.example/optics/unit"
+	"meniscus.example/optics/vergence"
 )
 
 // KeratometricIndex is the index by which 7.50 mm is 45.00 D: the default of instruments, and the index in which
@@ -234,3 +235,34 @@ func (c Cornea) SteepK() unit.Dioptre {
 //
 // Source: definition.
 func (c Cornea) Astigmatism() unit.Dioptre { return c.SteepK() - c.FlatK() }
+
+// Sags are the depths of the cornea over a chord in (0, +Inf), along the flat and the steep meridian, each a conic with the
+// cornea's shape. It fails with an *unit.ImpossibleError where a meridian does not reach that far out. A corneal conic
+// ends at the limbus, a chord of about 11.5 mm: the caller sees to that.
+//
+// Source: Baker 1943, as surface.Conic.Sag.
+func (c Cornea) Sags(chord unit.Millimetre) (flat, steep unit.Millimetre, err error) {
+	if flat, err = (surface.Conic{Radius: c.radii.Flat, Shape: c.shape}).Sag(chord / 2); err != nil {
+		return 0, 0, err
+	}
+	steep, err = (surface.Conic{Radius: c.radii.Steep, Shape: c.shape}).Sag(chord / 2)
+	return flat, steep, err
+}
+
+// FrontPower is the power of the front surface in air, with PhysicalIndex.
+//
+// Source: Gullstrand's schematic eye no. 1; (n' - n) C.
+func (c Cornea) FrontPower() vergence.PowerVector {
+	return c.curvature.Power(PhysicalIndex.Less(unit.Air))
+}
+
+// Correcting is the minus cylinder that corrects the corneal astigmatism at the cornea, with no sphere: its axis is the flat
+// meridian.
+//
+// Source: definition.
+func (c Cornea) Correcting() vergence.SphereCylinder {
+	if c.Astigmatism() < vergence.NoCylinder {
+		return vergence.SphereCylinder{}
+	}
+	return vergence.SphereCylinder{Cylinder: -c.Astigmatism(), Axis: c.radii.FlatMeridian}
+}

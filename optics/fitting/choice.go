@@ -94,3 +94,14 @@ var (
 		"definition",
 	}
 )
+
+// ChoiceOfShape is the choice of a corneal shape where none was given.
+//
+// Source: it names its own.
+func ChoiceOfShape() Choice {
+	return Choice{
+		"cornea_shape",
+		"asphericity Q = -0.26, a mean of adults, since none was given",
+		"Navarro's eye (7.72 mm, Q -0.26); populations -0.24 ± 0.10, n = 500, and -0.30 ± 0.12, n = 1052 (PMC10926314)",
+	}
+}

@@ -108,8 +108,13 @@ const (
 	acceptableResidual unit.Dioptre = 0.50
 )
 
-// strongest is the greatest power in any meridian that is answered with a lens.
-const strongest unit.Dioptre = 100
+// The greatest power in any meridian, and the greatest cylinder, that are answered.
+//
+// Source: definition (far beyond any lens).
+const (
+	strongest         unit.Dioptre = 100
+	strongestCylinder unit.Dioptre = 50
+)
 
 // Fit computes the lens to order for the case. It fails with an *unit.ImpossibleError, with paths in the words of the schema, where the values,
 // each fine by itself, can make no lens.
@@ -146,7 +151,7 @@ func (c *Case) Fit() (Result, error) {
 	r.Power, r.PowerOrdered = d.power, d.ordered
 	r.TearLens = c.layer.Lens(d.body.Back, c.cornea.Curvature())
 
-	if r.OverWorn, err = r.Over.Power.Upstream(c.refraction.Vertex(), unit.Air); err != nil || r.OverWorn.M+r.OverWorn.J() > strongest || r.OverWorn.M-r.OverWorn.J() < -strongest {
+	if r.OverWorn, err = r.Over.Power.Upstream(c.refraction.Vertex(), unit.Air); err != nil || unanswerable(r.OverWorn) || beyond(r.Over.Power) {
 		return Result{}, &unit.ImpossibleError{
 			Fields:  []string{"lens.power"},
 			Problem: fmt.Sprintf("is so far from the %+.2f D wanted that no correction before it could make up the difference", float64(r.Wanted.Power.M)),
@@ -157,6 +162,12 @@ func (c *Case) Fit() (Result, error) {
 	r.AcuityLog, r.Acuity = Acuity(r.Blur)
 	r.caution()
 	return r, nil
+}
+
+// unanswerable reports an over-refraction outside what a refraction can be.
+func unanswerable(v vergence.PowerVector) bool {
+	j := v.J()
+	return v.M+j > 30 || v.M-j < -40 || 2*j > 12
 }
 
 // dimensions decides the diameters.
@@ -303,7 +314,7 @@ func (c *Case) design(r *Result, t Toricity, effect Effect, flat unit.Millimetre
 		return design{}, impossiblePower("plan.apex_clearance_um", "the light that the eye needs would come to a focus in the tears")
 	}
 	need := d.wanted.Power
-	if need.M+need.J() > strongest || need.M-need.J() < -strongest {
+	if beyond(need.PowerVector) {
 		return design{}, impossiblePower("eye.refraction.vertex_distance_mm",
 			fmt.Sprintf("the lens would need a back vertex power of %+.2f D", float64(need.M)))
 	}

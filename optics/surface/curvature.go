@@ -84,3 +84,8 @@ func (c Curvature) Radii() Radii {
 		FlatMeridian: (v.Axis() + 90).Meridian(), // J0 < 0 is a flat meridian along 180
 	}
 }
+
+// Mean is the mean of the two radii.
+//
+// Source: definition.
+func (r Radii) Mean() unit.Millimetre { return (r.Flat + r.Steep) / 2 }

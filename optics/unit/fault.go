@@ -82,3 +82,15 @@ func join(prefix, field string) string {
 	}
 	return prefix + "." + field
 }
+
+// At puts a path in the place of whatever fields an ImpossibleError names. Another error is returned as it is.
+//
+// Source: definition.
+func At(field string, err error) error {
+	if e, ok := err.(*ImpossibleError); ok {
+		w := *e
+		w.Fields = []string{field}
+		return &w
+	}
+	return err
+}

@@ -153,3 +153,26 @@ func (s SpectacleRefraction) Ocular() OcularRefraction { return OcularRefraction
 func (k OcularRefraction) AtVertex(d unit.Millimetre) (PowerVector, error) {
 	return k.Upstream(d, unit.Air)
 }
+
+// Gap is the distance from the plane of the refraction to another plane before the eye, at to from the
+// cornea, and whether that plane lies upstream, further from the eye.
+//
+// Source: definition.
+func (s SpectacleRefraction) Gap(to unit.Millimetre) (d unit.Millimetre, upstream bool) {
+	if to > s.vertex {
+		return to - s.vertex, true
+	}
+	return s.vertex - to, false
+}
+
+// Transfer is the correction of the same eye at another distance from it, in [0, +Inf), in one move from the plane
+// of the refraction. It fails with ErrFocusInGap where light would come to a focus in between.
+//
+// Source: Wikipedia, Vertex distance; in matrix form as PowerVector.Downstream.
+func (s SpectacleRefraction) Transfer(to unit.Millimetre) (PowerVector, error) {
+	if gap, upstream := s.Gap(to); upstream {
+		return s.power.Upstream(gap, unit.Air)
+	} else {
+		return s.power.Downstream(gap, unit.Air)
+	}
+}

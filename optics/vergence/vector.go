@@ -174,3 +174,13 @@ func Gap(v PowerVector, q float64) (mean, det float64) {
 	mean = 1 - float64(q*float64(v.M))
 	return mean, float64(mean*mean) - j2
 }
+
+// Transposed is the same power written with the cylinder of the other sign; without a cylinder it is the same.
+//
+// Source: definition (transposition).
+func (p SphereCylinder) Transposed() SphereCylinder {
+	if p.Cylinder == 0 {
+		return p
+	}
+	return SphereCylinder{Sphere: p.Sphere + p.Cylinder, Cylinder: -p.Cylinder, Axis: (p.Axis + 90).Meridian()}
+}

@@ -651,7 +651,7 @@ func (b0 NamedValue_builder) Build() *NamedValue {
 }
 
 // DerivationStep is one line of the calculation. The formula, with the inputs put into it, gives the
-// result to the last digit of a double.
+// result to the rounding of a double.
 type DerivationStep struct {
 	state                  protoimpl.MessageState `protogen:"opaque.v1"`
 	xxx_hidden_Name        *string                `protobuf:"bytes,1,opt,name=name"`

@@ -139,7 +139,8 @@ type SphereCylinder_builder struct {
 	// The sphere, in dioptres, in [-100, 100].
 	SphereD *float64
 	// The cylinder, in dioptres, in [-50, 50]; either sign is read. Absent: 0. Answers give minus
-	// cylinders unless the plus form was asked for; a cylinder below 0.005 D is given as absent.
+	// cylinders unless the plus form was asked for; a cylinder below 0.005 D is given as 0, without an
+	// axis.
 	CylinderD *float64
 	// The axis of the cylinder, in degrees, in [0, 180]; 0 is read as 180. Needed with a cylinder
 	// other than 0. Absent in an answer without a cylinder.
@@ -279,7 +280,7 @@ func (x *PowerVector) ClearJ45D() {
 type PowerVector_builder struct {
 	_ [0]func() // Prevents comparability and use of unkeyed literals for the builder.
 
-	// The spherical equivalent M, in dioptres, in [-125, 125].
+	// The spherical equivalent M, in dioptres, in [-100, 100].
 	MeanD *float64
 	// The cross-cylinder with its axes at 180 and 90, J0, in dioptres, in [-25, 25]; positive for a
 	// minus cylinder with its axis at 180.
@@ -527,7 +528,7 @@ const file_meniscus_v1_prescription_proto_rawDesc = "" +
 	"\x03deg\x11\x00\x00\x00\x00\x00\x00\x00\x00\x19\x00\x00\x00\x00\x00\x80f@!\x00\x00\x00\x00\x00\x00\xf0?*8\t\x00\x00\x00\x00\x00\x80f@\x11\x00\x00\x00\x00\x00\x80v@\x1a$an axis counted to 360: subtract 180*6\t\x00\x00\x00\x00\x00\x80f\xc0\x11\x00\x00\x00\x00\x00\x00\x00\x00\x1a\"an axis counted clockwise: add 180R\aaxisDeg\"\xc7\x01\n" +
 	"\vPowerVector\x12>\n" +
 	"\x06mean_d\x18\x01 \x01(\x01B'\x8a\xcf\x18#\n" +
-	"\x06[diop]\x11\x00\x00\x00\x00\x00@_\xc0\x19\x00\x00\x00\x00\x00@_@!{\x14\xaeG\xe1z\x84?R\x05meanD\x12:\n" +
+	"\x06[diop]\x11\x00\x00\x00\x00\x00\x00Y\xc0\x19\x00\x00\x00\x00\x00\x00Y@!{\x14\xaeG\xe1z\x84?R\x05meanD\x12:\n" +
 	"\x04j0_d\x18\x02 \x01(\x01B'\x8a\xcf\x18#\n" +
 	"\x06[diop]\x11\x00\x00\x00\x00\x00\x009\xc0\x19\x00\x00\x00\x00\x00\x009@!{\x14\xaeG\xe1z\x84?R\x03j0D\x12<\n" +
 	"\x05j45_d\x18\x03 \x01(\x01B'\x8a\xcf\x18#\n" +

@@ -1203,7 +1203,7 @@ func (x *MeridianPower) ClearMeridianDeg() {
 type MeridianPower_builder struct {
 	_ [0]func() // Prevents comparability and use of unkeyed literals for the builder.
 
-	// The power, in dioptres, in [-150, 150].
+	// The power, in dioptres, in [-100, 100].
 	PowerD *float64
 	// The meridian along which the power lies, in degrees, in (0, 180]. Absent where the power is the
 	// same along all.
@@ -1945,7 +1945,7 @@ const file_meniscus_v1_refraction_service_proto_rawDesc = "" +
 	"\x05power\"\x9a\x01\n" +
 	"\rMeridianPower\x12@\n" +
 	"\apower_d\x18\x01 \x01(\x01B'\x8a\xcf\x18#\n" +
-	"\x06[diop]\x11\x00\x00\x00\x00\x00\xc0b\xc0\x19\x00\x00\x00\x00\x00\xc0b@!\x00\x00\x00\x00\x00\x00\xd0?R\x06powerD\x12G\n" +
+	"\x06[diop]\x11\x00\x00\x00\x00\x00\x00Y\xc0\x19\x00\x00\x00\x00\x00\x00Y@!\x00\x00\x00\x00\x00\x00\xd0?R\x06powerD\x12G\n" +
 	"\fmeridian_deg\x18\x02 \x01(\x01B$\x8a\xcf\x18 \n" +
 	"\x03deg\x11\x00\x00\x00\x00\x00\x00\x00\x00\x19\x00\x00\x00\x00\x00\x80f@!\x00\x00\x00\x00\x00\x00\xf0?R\vmeridianDeg\"\x87\x04\n" +
 	"\x0fExpressResponse\x12B\n" +

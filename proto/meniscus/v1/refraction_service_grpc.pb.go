@@ -37,10 +37,12 @@ type RefractionServiceClient interface {
 	// INVALID_ARGUMENT with every violation; FAILED_PRECONDITION where a focus would fall into the gap.
 	TransferVertex(ctx context.Context, in *TransferVertexRequest, opts ...grpc.CallOption) (*TransferVertexResponse, error)
 	// Combine adds and subtracts thin powers in contact. Idempotent. Errors: INVALID_ARGUMENT with
-	// every violation.
+	// every violation; FAILED_PRECONDITION where a meridian of the sum is beyond 100 D or its cylinder
+	// beyond 50 D.
 	Combine(ctx context.Context, in *CombineRequest, opts ...grpc.CallOption) (*CombineResponse, error)
 	// Express writes one power in all the ways in which the trade writes it. Idempotent. Errors:
-	// INVALID_ARGUMENT with every violation.
+	// INVALID_ARGUMENT with every violation; FAILED_PRECONDITION where a meridian is beyond 100 D or the
+	// cylinder beyond 50 D.
 	Express(ctx context.Context, in *ExpressRequest, opts ...grpc.CallOption) (*ExpressResponse, error)
 	// CompareCorrections puts spectacles and a contact lens side by side. Not served by this version
 	// (UNIMPLEMENTED).
@@ -105,10 +107,12 @@ type RefractionServiceServer interface {
 	// INVALID_ARGUMENT with every violation; FAILED_PRECONDITION where a focus would fall into the gap.
 	TransferVertex(context.Context, *TransferVertexRequest) (*TransferVertexResponse, error)
 	// Combine adds and subtracts thin powers in contact. Idempotent. Errors: INVALID_ARGUMENT with
-	// every violation.
+	// every violation; FAILED_PRECONDITION where a meridian of the sum is beyond 100 D or its cylinder
+	// beyond 50 D.
 	Combine(context.Context, *CombineRequest) (*CombineResponse, error)
 	// Express writes one power in all the ways in which the trade writes it. Idempotent. Errors:
-	// INVALID_ARGUMENT with every violation.
+	// INVALID_ARGUMENT with every violation; FAILED_PRECONDITION where a meridian is beyond 100 D or the
+	// cylinder beyond 50 D.
 	Express(context.Context, *ExpressRequest) (*ExpressResponse, error)
 	// CompareCorrections puts spectacles and a contact lens side by side. Not served by this version
 	// (UNIMPLEMENTED).

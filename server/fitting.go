@@ -1,0 +1,147 @@
+package server
+
+import (
+	"context"
+	"fmt"
+	"strings"
+
+	"meniscus.example/optics/fitting"
+	"meniscus.example/optics/unit"
+	pb "meniscus.example/proto/meniscus/v1"
+)
+
+// fittingService answers FittingService.
+type fittingService struct {
+	pb.UnimplementedFittingServiceServer
+	door *door
+}
+
+// Fit computes the lens for one eye.
+func (s fittingService) Fit(_ context.Context, req *pb.FitRequest) (*pb.FitResponse, error) {
+	c, err := fitCase(s.door, req)
+	if err != nil {
+		return nil, err
+	}
+	r, err := c.Fit()
+	if err != nil {
+		return nil, statusFrom(err)
+	}
+	return fitResponse(req, &r), nil
+}
+
+func fitResponse(req *pb.FitRequest, r *fitting.Result) *pb.FitResponse {
+	form := req.GetPlan().GetCylinderForm()
+	m := &pb.FitResponse{}
+	m.SetLens(lensToOrder(req.GetLens(), r, form))
+	m.SetRequiredPower(sphereCylinder(r.Wanted.Power.PowerVector, form))
+	m.SetOcularRefraction(sphereCylinder(r.Ocular.PowerVector, form))
+	m.SetTearLens(tearLens(r, form))
+	m.SetOverRefraction(refraction(r.OverWorn, form, r.Spectacle.Vertex()))
+	m.SetResidual(residual(r))
+	m.SetOxygen(oxygen(req.GetLens().GetMaterial(), r))
+	m.SetCautions(cautions(r.Cautions(), ""))
+	if req.GetPlan().GetExplain() {
+		m.SetDerivation(derivation(r.Derivation()))
+	}
+	m.SetProvenance(provenance())
+	m.SetChoices(fitChoices(r))
+	if req.GetEye().HasSide() {
+		m.SetSide(req.GetEye().GetSide())
+	}
+	return m
+}
+
+// lensToOrder is the lens, complete. What was given of the material is given back.
+func lensToOrder(given *pb.Lens, r *fitting.Result, form pb.CylinderForm) *pb.Lens {
+	back := &pb.BackSurface{}
+	back.SetOpticZoneRadiusMm(float64(r.Radii.Flat))
+	if r.Radii.Steep != r.Radii.Flat {
+		back.SetSteepRadiusMm(float64(r.Radii.Steep))
+		back.SetFlatMeridianDeg(float64(r.Radii.FlatMeridian))
+	}
+	back.SetOpticZoneDiameterMm(float64(r.ZoneDiameter))
+	material := &pb.Material{}
+	material.SetRefractiveIndex(float64(r.Body.Index))
+	if was := given.GetMaterial(); was != nil {
+		if was.HasDk() {
+			material.SetDk(was.GetDk() + 0)
+		}
+		if was.HasDensityGCm3() {
+			material.SetDensityGCm3(was.GetDensityGCm3())
+		}
+		if was.HasName() {
+			material.SetName(was.GetName())
+		}
+	}
+	m := &pb.Lens{}
+	m.SetKind(pb.LensKind_LENS_KIND_RIGID)
+	m.SetToricity(wireToricity[r.Toricity])
+	m.SetBackSurface(back)
+	m.SetTotalDiameterMm(float64(r.Diameter))
+	m.SetCentreThicknessMm(float64(r.Body.CentreThickness))
+	m.SetMaterial(material)
+	power := r.Power
+	if wantsPlus := form == pb.CylinderForm_CYLINDER_FORM_PLUS; wantsPlus == (power.Cylinder < 0) {
+		power = power.Transposed()
+	}
+	m.SetPower(sphereCylinderOf(power))
+	return m
+}
+
+var wireToricity = [...]pb.Toricity{
+	fitting.Spherical:  pb.Toricity_TORICITY_SPHERICAL,
+	fitting.FrontToric: pb.Toricity_TORICITY_FRONT,
+	fitting.BackToric:  pb.Toricity_TORICITY_BACK,
+	fitting.Bitoric:    pb.Toricity_TORICITY_BITORIC,
+}
+
+func tearLens(r *fitting.Result, form pb.CylinderForm) *pb.TearLens {
+	m := &pb.TearLens{}
+	m.SetPower(sphereCylinder(r.TearLens.PowerVector, form))
+	m.SetPowerVector(powerVector(r.TearLens.PowerVector))
+	m.SetApexClearanceUm(float64(r.Layer.Apex.Micrometres()))
+	m.SetIndex(float64(r.Layer.Index))
+	return m
+}
+
+func residual(r *fitting.Result) *pb.Residual {
+	m := &pb.Residual{}
+	m.SetVector(powerVector(r.Over.Power))
+	m.SetBlurStrengthD(float64(r.Blur))
+	m.SetAcuityLossLogmar(r.AcuityLog)
+	m.SetDecimalAcuity(r.Acuity)
+	m.SetAcuityModel(fitting.AcuityModel)
+	return m
+}
+
+func oxygen(given *pb.Material, r *fitting.Result) *pb.Oxygen {
+	if !given.HasDk() {
+		return nil
+	}
+	m := &pb.Oxygen{}
+	m.SetDkTCentre(float64(unit.Permeability(given.GetDk()).Transmissibility(r.Body.CentreThickness)) + 0)
+	return m
+}
+
+// fitChoices are the choices, with what was compared where the toricity was one.
+func fitChoices(r *fitting.Result) []*pb.Choice {
+	out := choices(r.Choices())
+	compared := r.Compared()
+	if len(compared) == 0 {
+		return out
+	}
+	text := make([]string, len(compared))
+	for i, c := range compared {
+		name := c.Toricity.String()
+		if c.Effect != fitting.NoEffect {
+			name += " (" + c.Effect.String() + ")"
+		}
+		text[i] = fmt.Sprintf("%s leaves %.2f D", name, float64(c.Residual))
+	}
+	for _, m := range out {
+		if m.GetField() == "lens.toricity" {
+			m.SetRule(m.GetRule() + "; astigmatism compared: " + strings.Join(text, ", "))
+		}
+	}
+	return out
+}
