@@ -10,6 +10,7 @@ require (
 )
 
 require (
+	github.com/spf13/pflag v1.1.0 // indirect
 	golang.org/x/mod v0.42.0 // indirect
 	golang.org/x/net v0.61.0 // indirect
 	golang.org/x/sync v0.24.0 // indirect

@@ -1,0 +1,2 @@
+// Command meniscusd serves meniscus.v1 over gRPC.
+package main
