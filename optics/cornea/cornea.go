@@ -132,7 +132,7 @@ func New(in Readings, shape unit.Optional[unit.ShapeFactor]) (Cornea, []error) {
 				across.Meridian(), unit.Degree(90-math.Abs(float64(c.skew)))), "one meridian entered twice")
 			return Cornea{}, faults
 		}
-		c.radii.FlatMeridian = (along + c.skew/2).Meridian()
+		c.radii.FlatMeridian = (along + unit.Degree(float64(float64(c.skew)/2))).Meridian()
 	case flatGiven:
 		c.radii.FlatMeridian = along.Meridian()
 	case steepGiven:

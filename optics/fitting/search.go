@@ -122,8 +122,8 @@ func (s *search) worthTrying(k int, best unit.Dioptre) bool {
 
 func (s *search) tryCylinder(k int, axis unit.Degree, sin, cos float64, mean unit.Dioptre) {
 	size := s.cylinder.At(k)
-	half := float64(size) / 2
-	m := s.power.RoundIndex(mean + size/2) // S = M + J
+	half := float64(float64(size) / 2)
+	m := s.power.RoundIndex(mean + unit.Dioptre(half)) // S = M + J
 	for i := m - 1; i <= m+1; i++ {
 		sphere := s.power.At(i)
 		written := vergence.SphereCylinder{Sphere: sphere, Cylinder: -size, Axis: axis}
@@ -131,7 +131,7 @@ func (s *search) tryCylinder(k int, axis unit.Degree, sin, cos float64, mean uni
 			written = vergence.SphereCylinder{Sphere: sphere}
 		}
 		s.try(written, vergence.PowerVector{
-			M:   sphere - size/2,
+			M:   sphere - unit.Dioptre(half),
 			J0:  unit.Dioptre(half * cos),
 			J45: unit.Dioptre(half * sin),
 		})

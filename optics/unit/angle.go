@@ -10,7 +10,7 @@ import "math"
 func (d Degree) SinCos() (sin, cos float64) {
 	r := math.Remainder(float64(d), 360) // exact, in [-180, 180]
 	q := math.RoundToEven(r / 90)        // which quarter turn is nearest
-	r -= 90 * q                          // exact, in [-45, 45]
+	r -= float64(90 * q)                 // exact, in [-45, 45]
 	var s, c float64
 	switch {
 	case r == 30:

@@ -41,9 +41,9 @@ func Sphere(s unit.Dioptre) PowerVector { return PowerVector{M: s} }
 // Source: Thibos, Wheeler & Horner 1997.
 func (p SphereCylinder) Vector() PowerVector {
 	sin, cos := (2 * p.Axis).SinCos()
-	half := float64(p.Cylinder) / 2
+	half := float64(float64(p.Cylinder) / 2)
 	return PowerVector{
-		M:   p.Sphere + p.Cylinder/2, // Source: Thibos, Wheeler & Horner 1997. A half is exact: no FMA.
+		M:   p.Sphere + unit.Dioptre(half),
 		J0:  unit.Dioptre(-half*cos) + 0,
 		J45: unit.Dioptre(-half*sin) + 0,
 	}
