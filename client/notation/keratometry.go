@@ -32,9 +32,7 @@ func ParseKeratometry(text string) (*pb.Keratometry, error) {
 	second := proto.CloneOf(first)
 	second.ClearMeridianDeg()
 	if s.word("sph", "sphere", "DS"); !s.done() {
-		if !s.mark("/", ",", ";") && s.at == 0 {
-			return nil, s.expected("steep", "a slash and the other reading")
-		}
+		s.mark("/", ",", ";")
 		if second, err = s.reading("steep"); err != nil {
 			return nil, err
 		}

@@ -1,0 +1,2 @@
+// Command meniscus calculates contact lens fits at a terminal.
+package main
