@@ -67,11 +67,11 @@ func (p *page) fit(res *pb.FitResponse) {
 	over, left := res.GetOverRefraction(), res.GetResidual()
 	rows = [][]string{
 		{"refraction at the cornea", power(res.GetOcularRefraction(), 3)},
-		{"tear lens", power(res.GetTearLens().GetPower(), 3), fmt.Sprintf("index %.4g, %.0f µm at the apex", res.GetTearLens().GetIndex(), res.GetTearLens().GetApexClearanceUm())},
+		{"tear lens", power(res.GetTearLens().GetPower(), 3), fmt.Sprintf("index %g, %.0f µm at the apex", res.GetTearLens().GetIndex(), res.GetTearLens().GetApexClearanceUm())},
 		{"back vertex power required", power(res.GetRequiredPower(), 3), "exact"},
 		{"over-refraction predicted", power(over, 2), "at vertex " + mm(over.GetVertexDistanceMm(), 1)},
 		{"blur strength", fmt.Sprintf("%.2f D", left.GetBlurStrengthD())},
-		{"acuity predicted", fmt.Sprintf("%.2f of the best", left.GetDecimalAcuity()), fmt.Sprintf("%.2f logMAR lost, without accommodation", left.GetAcuityLossLogmar())},
+		{"acuity predicted", fmt.Sprintf("%.2f (decimal)", left.GetDecimalAcuity()), fmt.Sprintf("%.2f logMAR lost, from 1.0, no accommodation", left.GetAcuityLossLogmar())},
 	}
 	if res.HasOxygen() {
 		rows = append(rows, []string{"oxygen, Dk/t at the centre", fmt.Sprintf("%.0f", res.GetOxygen().GetDkTCentre()), "10⁻⁹ (cm/s)(mL O2/(mL·mmHg))"})
@@ -91,9 +91,9 @@ func steepWrap(back *pb.BackSurface) float64 {
 }
 
 func material(m *pb.Material) []string {
-	text := fmt.Sprintf("index %.4g", m.GetRefractiveIndex())
+	text := fmt.Sprintf("index %g", m.GetRefractiveIndex())
 	if m.HasDk() {
-		text += fmt.Sprintf(", Dk %.4g", m.GetDk())
+		text += fmt.Sprintf(", Dk %g", m.GetDk())
 	}
 	if m.HasName() {
 		text = m.GetName() + ", " + text

@@ -110,14 +110,19 @@ func (p *page) table(rows ...[]string) {
 	_ = w.Flush()
 }
 
-// wrap writes a text between the indent and the width; what follows the first line is indented by two more.
+// wrap writes a text between the indent and the width; a text with a label (up to a colon) has its further lines
+// indented by two more.
 func (p *page) wrap(indent, text string) {
+	hanging := ""
+	if strings.Contains(text, ": ") {
+		hanging = "  "
+	}
 	line, used := indent, utf8.RuneCountInString(indent)
 	for i, word := range strings.Fields(text) {
 		n := utf8.RuneCountInString(word)
 		if i > 0 && used+1+n > width {
 			p.buffer.WriteString(line + "\n")
-			line = indent + "  "
+			line = indent + hanging
 			used = utf8.RuneCountInString(line)
 		} else if i > 0 {
 			line += " "
@@ -135,8 +140,11 @@ func (p *page) cautionsAndNotice(cautions []*pb.Caution, from *pb.Provenance) {
 	names := map[pb.Severity]string{
 		pb.Severity_SEVERITY_NOTE: "note", pb.Severity_SEVERITY_ADVICE: "advice", pb.Severity_SEVERITY_WARNING: "WARNING",
 	}
+	if len(cautions) == 1 && cautions[0].GetCode() == pb.CautionCode_CAUTION_CODE_STARTING_POINT {
+		p.wrap("  ", "none but the notice below")
+	}
 	for _, c := range cautions {
-		if c.GetCode() == pb.CautionCode_CAUTION_CODE_STARTING_POINT && len(cautions) > 1 {
+		if c.GetCode() == pb.CautionCode_CAUTION_CODE_STARTING_POINT {
 			continue // the notice below says it
 		}
 		text := names[c.GetSeverity()] + ": " + c.GetMessage()
@@ -145,9 +153,9 @@ func (p *page) cautionsAndNotice(cautions []*pb.Caution, from *pb.Provenance) {
 		}
 		p.wrap("  ", text)
 	}
-	p.title("")
-	p.wrap("", from.GetNotice())
-	p.wrap("", "(engine "+from.GetEngineVersion()+", schema "+from.GetSchemaVersion()+")")
+	p.title("Notice")
+	p.wrap("  ", from.GetNotice())
+	p.wrap("  ", "(engine "+from.GetEngineVersion()+", schema "+from.GetSchemaVersion()+")")
 }
 
 // derivation writes the steps of a calculation, numbered.

@@ -131,12 +131,13 @@ var rules = [...]Rule{
 	},
 	ResidualAstigmatism: {
 		Code: ResidualAstigmatism, Severity: Advice,
-		Meaning: "the predicted over-refraction has a cylinder of 0.75 D or more",
-		Limit:   some(0.75), Unit: ucumDioptre,
-		Action: "check with an over-refraction; consider another toricity",
-		Source: "0.75 D and more may reduce vision (contact lens teaching literature; residual is refractive at the cornea minus corneal)",
+		Meaning: "the predicted over-refraction has a cylinder of 0.75 D or more; from 1.50 D it is a warning",
+		Limit:   some(0.75), SevereFrom: some(1.5), Unit: ucumDioptre,
+		Action: "check with an over-refraction; consider another toricity, or a front cylinder at the axis of the required power",
+		Source: "0.75 D and more may reduce vision (contact lens teaching literature; residual is refractive at the cornea minus corneal); " +
+			"1.50 D is common practice",
 		says: func(c Caution) string {
-			return fmt.Sprintf("The lens is predicted to leave %.2f D of astigmatism; %.2f D and more may reduce vision.", c.Value, c.Limit)
+			return fmt.Sprintf("The lens is predicted to leave %.2f D of astigmatism; 0.75 D and more may reduce vision.", c.Value)
 		},
 	},
 	MeridiansNotPerpendicular: {
@@ -147,7 +148,7 @@ var rules = [...]Rule{
 		Source: "10° is common practice; skewed axes above 21°: PMC7853137, table 1a",
 		says: func(c Caution) string {
 			return fmt.Sprintf("The corneal meridians were read %.0f° away from perpendicular, more than %.0f°; the perpendicular pair closest to both was used.",
-				c.Value, c.Limit)
+				math.Abs(c.Value), c.Limit)
 		},
 	},
 	PowerUncommon: {
