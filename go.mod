@@ -19,6 +19,7 @@ require (
 	golang.org/x/sys v0.49.0 // indirect
 	golang.org/x/text v0.43.0 // indirect
 	google.golang.org/grpc/cmd/protoc-gen-go-grpc v1.6.2 // indirect
+	pgregory.net/rapid v1.3.0 // indirect
 )
 
 tool (
