@@ -45,10 +45,11 @@ func (s Step[T]) RoundIndex(x T) int {
 //
 // Source: definition.
 func (s Step[T]) FloorIndex(x T) int {
-	if s.inverse != 0 {
-		return int(math.Floor(float64(x) * s.inverse))
+	k := s.RoundIndex(x)
+	if s.At(k) > x {
+		k--
 	}
-	return int(math.Floor(float64(x) / s.size))
+	return k
 }
 
 // Round is the grid value nearest to x; a tie goes away from 0, and there is no negative zero.
