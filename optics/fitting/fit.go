@@ -351,7 +351,7 @@ func (c *Case) design(r *Result, t Toricity, effect Effect, flat unit.Millimetre
 		case BackToric:
 			s.spheres(vergence.PowerVector{J0: inAir.J0, J45: inAir.J45}, 0)
 		case FrontToric:
-			s.cylinders(nearestAxes(need.Axis(), c.axis))
+			s.anyAxis(c.axis)
 		case Bitoric:
 			if effect == SphericalPowerEffect {
 				undo := d.body.Back.Power(unit.Air.Less(c.layer.Index))

@@ -87,37 +87,70 @@ func (s *search) fixedCylinder(size unit.Dioptre, axis unit.Degree) (vergence.Po
 	return v, axis
 }
 
-// cylinders tries every cylinder that could be the best at each of two axes, each with the spheres around its best. From the
-// cylinder that would leave the least at that axis it goes both ways, until the cylinder alone leaves more than the best power found.
+// cylinders tries every cylinder that could be the best at each of two axes.
 func (s *search) cylinders(axes [2]unit.Degree) {
-	behind, err := s.body.OfFront(s.need.Front)
+	wanted, err := s.body.OfFront(s.need.Front)
 	if err != nil {
 		return
 	}
-	for i, axis := range axes {
-		if i > 0 && axis == axes[0] {
-			break
-		}
-		// The part of the wanted cross-cylinder that lies along the axis.
-		sin, cos := (2 * axis).SinCos()
-		along := unit.Dioptre(float64(float64(behind.J0)*cos) + float64(float64(behind.J45)*sin))
-		best := max(0, 2*along)
-		start := s.cylinder.RoundIndex(best)
-		for k := start; s.worthTrying(k, best); k++ {
-			s.tryCylinder(k, axis, sin, cos, behind.M)
-		}
-		for k := start - 1; k >= 0 && s.worthTrying(k, best); k-- {
-			s.tryCylinder(k, axis, sin, cos, behind.M)
+	for _, axis := range axes {
+		s.atAxis(axis, wanted.PowerVector)
+	}
+}
+
+// anyAxis tries every cylinder that could be the best at every axis of a grid: from the axes on either side of the wanted one
+// outwards, until the part of the wanted cylinder across the axis alone leaves more than the best power found.
+func (s *search) anyAxis(step unit.Step[unit.Degree]) {
+	wanted, err := s.body.OfFront(s.need.Front)
+	if err != nil {
+		return
+	}
+	count := step.FloorIndex(180)
+	if step.At(count) < 180 {
+		count++ // the axes are 0 (which is 180) and count - 1 more
+	}
+	below := step.FloorIndex(wanted.Axis())
+	for i := range (count + 1) / 2 {
+		one := s.atAxis(step.At((below-i+count)%count).Meridian(), wanted.PowerVector)
+		other := s.atAxis(step.At((below+1+i)%count).Meridian(), wanted.PowerVector)
+		if !one && !other {
+			return
 		}
 	}
 }
 
+// atAxis tries the cylinders at one axis, each with the spheres around its best. From the cylinder that would leave the least
+// there it goes both ways, until the cylinder alone leaves more than the best power found. It reports whether there was one worth
+// trying.
+func (s *search) atAxis(axis unit.Degree, wanted vergence.PowerVector) bool {
+	// The parts of the wanted cross-cylinder along and across the axis.
+	sin, cos := (2 * axis).SinCos()
+	x, y := float64(wanted.J0), float64(wanted.J45)
+	along, across := float64(x*cos)+float64(y*sin), float64(y*cos)-float64(x*sin)
+	best := unit.Dioptre(max(0, 2*along))
+	if along < 0 {
+		across = math.Sqrt(float64(along*along) + float64(across*across))
+	}
+	start := s.cylinder.RoundIndex(best)
+	tried := false
+	for k := start; s.worthTrying(k, best, across); k++ {
+		s.tryCylinder(k, axis, sin, cos, wanted.M)
+		tried = true
+	}
+	for k := start - 1; k >= 0 && s.worthTrying(k, best, across); k-- {
+		s.tryCylinder(k, axis, sin, cos, wanted.M)
+		tried = true
+	}
+	return tried
+}
+
 // worthTrying reports whether a cylinder of k steps could leave less than the best power found, the best cylinder at
-// that axis being given. The cylinder leaves half its error in J; the effectivity of a lens changes that by a few per cent, for which
-// it is let off a third.
-func (s *search) worthTrying(k int, best unit.Dioptre) bool {
-	off := math.Abs(float64(s.cylinder.At(k)-best)) / 3
-	return !s.found || off <= float64(s.blur)
+// that axis and what is left across it being given. The cylinder leaves half its error in J; the effectivity of a lens changes that by some
+// per cent, for which it is let off a third.
+func (s *search) worthTrying(k int, best unit.Dioptre, across float64) bool {
+	off := float64(s.cylinder.At(k)-best) / 2
+	least := math.Sqrt(float64(off*off)+float64(across*across)) * (2.0 / 3)
+	return !s.found || least <= float64(s.blur)
 }
 
 func (s *search) tryCylinder(k int, axis unit.Degree, sin, cos float64, mean unit.Dioptre) {
@@ -143,15 +176,4 @@ func (s *search) sphereCylinder() vergence.SphereCylinder {
 	w := s.written
 	w.Sphere, w.Cylinder = w.Sphere+0, w.Cylinder+0
 	return w
-}
-
-// nearestAxes are the two axes that can be ordered on either side of the wanted one.
-func nearestAxes(wanted unit.Degree, step unit.Step[unit.Degree]) [2]unit.Degree {
-	below := step.FloorIndex(wanted)
-	last := step.FloorIndex(180)
-	above := below + 1
-	if above > last {
-		above = 0 // past the last one comes 0, which is 180
-	}
-	return [2]unit.Degree{step.At(below).Meridian(), step.At(above).Meridian()}
 }
