@@ -31,6 +31,7 @@ type plan struct {
 
 type check struct {
 	field    protoreflect.FieldDescriptor
+	kind     protoreflect.Kind
 	name     string
 	quantity *pb.Quantity // of a number
 	min, max float64
@@ -54,7 +55,7 @@ func (d *door) plan(m protoreflect.MessageDescriptor) *plan {
 	d.plans[m.FullName()] = p
 	for i := range m.Fields().Len() {
 		f := m.Fields().Get(i)
-		c := check{field: f, name: string(f.Name())}
+		c := check{field: f, kind: f.Kind(), name: string(f.Name())}
 		switch f.Kind() {
 		case protoreflect.MessageKind:
 			c.message = d.plan(f.Message())
@@ -70,36 +71,16 @@ func (d *door) plan(m protoreflect.MessageDescriptor) *plan {
 	return p
 }
 
-// check adds to v what is wrong with m, whose path is at (empty for a request).
+// check adds to v what is wrong with the request m.
 func (d *door) check(v *violations, m proto.Message) {
 	r := m.ProtoReflect()
 	if p := d.plans[r.Descriptor().FullName()]; p != nil {
-		p.check(v, r, nil)
+		p.check(v, r)
 	}
 }
 
-// path is where a message stands: the path of the message that holds it, and its own name there.
-type path struct {
-	parent *path
-	name   string
-	index  int // in a list; -1 elsewhere
-}
-
-func (at *path) String() string {
-	if at == nil {
-		return ""
-	}
-	s := at.name
-	if at.index >= 0 {
-		s += "[" + strconv.Itoa(at.index) + "]"
-	}
-	if at.parent != nil {
-		s = at.parent.String() + "." + s
-	}
-	return s
-}
-
-func (p *plan) check(v *violations, r protoreflect.Message, at *path) {
+// check adds what is wrong with a message. The paths of the faults begin in it; whoever holds it puts its name before them.
+func (p *plan) check(v *violations, r protoreflect.Message) {
 	for i := range p.fields {
 		c := &p.fields[i]
 		if !r.Has(c.field) {
@@ -107,41 +88,50 @@ func (p *plan) check(v *violations, r protoreflect.Message, at *path) {
 		}
 		value := r.Get(c.field)
 		if !c.field.IsList() {
-			if c.message != nil {
-				c.message.check(v, value.Message(), &path{at, c.name, -1})
-				continue
-			}
-			c.value(v, value, at, -1)
+			c.one(v, value, "")
 			continue
 		}
 		list := value.List()
 		if list.Len() > mostItems {
-			v.add((&path{at, c.name, -1}).String(), fmt.Sprintf("has %d items, more than %d", list.Len(), mostItems), "")
+			v.add(c.name, fmt.Sprintf("has %d items, more than %d", list.Len(), mostItems), "")
 			continue
 		}
 		for i := range list.Len() {
-			if c.message != nil {
-				c.message.check(v, list.Get(i).Message(), &path{at, c.name, i})
-				continue
+			known := len(v.list)
+			if c.one(v, list.Get(i), ""); len(v.list) > known {
+				// Only now is it worth to say which one.
+				v.list = v.list[:known]
+				c.one(v, list.Get(i), "["+strconv.Itoa(i)+"]")
 			}
-			c.value(v, list.Get(i), at, i)
 		}
 	}
 }
 
-// value checks one number, enum or text.
-func (c *check) value(v *violations, value protoreflect.Value, at *path, index int) {
-	fault := func(problem, looksLike string) {
-		v.add((&path{at, c.name, index}).String(), problem, looksLike)
+// one checks one value of a field; index is its place in a list, or empty.
+func (c *check) one(v *violations, value protoreflect.Value, index string) {
+	if c.message == nil {
+		if problem, looksLike := c.problem(value); problem != "" {
+			v.add(c.name+index, problem, looksLike)
+		}
+		return
 	}
-	switch c.field.Kind() {
+	known := len(v.list)
+	c.message.check(v, value.Message())
+	for i := known; i < len(v.list); i++ {
+		v.list[i].Field = c.name + index + "." + v.list[i].Field
+	}
+}
+
+// problem says what is wrong with a number, an enum or a text, and what it looks like; both are empty where nothing is.
+func (c *check) problem(value protoreflect.Value) (problem, looksLike string) {
+	switch c.kind {
 	case protoreflect.DoubleKind:
 		if x := value.Float(); c.quantity != nil && !(x >= c.min && x <= c.max) {
-			fault(c.outside(x))
+			return c.outside(x)
 		}
 	case protoreflect.Int32Kind, protoreflect.Int64Kind:
 		if x := float64(value.Int()); c.quantity != nil && !(x >= c.min && x <= c.max) {
-			fault(c.outside(x))
+			return c.outside(x)
 		}
 	case protoreflect.EnumKind:
 		values := c.field.Enum().Values()
@@ -150,13 +140,14 @@ func (c *check) value(v *violations, value protoreflect.Value, at *path, index i
 			for i := 1; i < values.Len(); i++ {
 				known = append(known, string(values.Get(i).Name()))
 			}
-			fault(fmt.Sprintf("is %d, not a value of %s; it has %s", value.Enum(), c.field.Enum().Name(), strings.Join(known, ", ")), "")
+			return fmt.Sprintf("is %d, not a value of %s; it has %s", value.Enum(), c.field.Enum().Name(), strings.Join(known, ", ")), ""
 		}
 	case protoreflect.StringKind:
 		if n := len(value.String()); n > longest {
-			fault(fmt.Sprintf("is %d bytes long, more than %d", n, longest), "")
+			return fmt.Sprintf("is %d bytes long, more than %d", n, longest), ""
 		}
 	}
+	return "", ""
 }
 
 // outside says what is wrong with a number that is not within the limits, and what it looks like.
