@@ -27,14 +27,32 @@ func call(req *pb.FitRequest) (*pb.FitResponse, error) {
 	return res.(*pb.FitResponse), nil
 }
 
+// codeAndFields are the code of an error, its message, and the fields that it names.
+func codeAndFields(err error) (codes.Code, string, []string) {
+	st := status.Convert(err)
+	var fields []string
+	for _, d := range st.Details() {
+		switch d := d.(type) {
+		case *errdetails.BadRequest:
+			for _, f := range d.GetFieldViolations() {
+				fields = append(fields, f.GetField())
+			}
+		case *errdetails.PreconditionFailure:
+			for _, f := range d.GetViolations() {
+				fields = append(fields, f.GetSubject())
+			}
+		}
+	}
+	return st.Code(), st.Message(), fields
+}
+
 // details are the code, the reason, and the fields that an error names; it fails on a status without exactly one ErrorInfo.
 func details(t testing.TB, err error) (codes.Code, string, []string) {
 	t.Helper()
-	st := status.Convert(err)
+	code, message, fields := codeAndFields(err)
 	var reason string
-	var fields []string
 	infos := 0
-	for _, d := range st.Details() {
+	for _, d := range status.Convert(err).Details() {
 		switch d := d.(type) {
 		case *errdetails.ErrorInfo:
 			infos++
@@ -44,21 +62,16 @@ func details(t testing.TB, err error) (codes.Code, string, []string) {
 			}
 		case *errdetails.BadRequest:
 			for _, f := range d.GetFieldViolations() {
-				fields = append(fields, f.GetField())
-				if f.GetDescription() == "" || !strings.Contains(st.Message(), f.GetField()) {
-					t.Errorf("%s: %q; the message is %q", f.GetField(), f.GetDescription(), st.Message())
+				if f.GetDescription() == "" || !strings.Contains(message, f.GetField()) {
+					t.Errorf("%s: %q; the message is %q", f.GetField(), f.GetDescription(), message)
 				}
-			}
-		case *errdetails.PreconditionFailure:
-			for _, f := range d.GetViolations() {
-				fields = append(fields, f.GetSubject())
 			}
 		}
 	}
 	if err != nil && infos != 1 {
 		t.Errorf("%d ErrorInfo in %v", infos, err)
 	}
-	return st.Code(), reason, fields
+	return code, reason, fields
 }
 
 func near(got, want, tol float64) bool { return math.Abs(got-want) <= tol }
