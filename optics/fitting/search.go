@@ -132,25 +132,26 @@ func (s *search) atAxis(axis unit.Degree, wanted vergence.PowerVector) bool {
 		across = math.Sqrt(float64(along*along) + float64(across*across))
 	}
 	start := s.cylinder.RoundIndex(best)
-	tried := false
-	for k := start; s.worthTrying(k, best, across); k++ {
+	if s.found && !s.worthTrying(start, best, across) {
+		return false
+	}
+	s.tryCylinder(start, axis, sin, cos, wanted.M)
+	for k := start + 1; s.worthTrying(k, best, across); k++ {
 		s.tryCylinder(k, axis, sin, cos, wanted.M)
-		tried = true
 	}
 	for k := start - 1; k >= 0 && s.worthTrying(k, best, across); k-- {
 		s.tryCylinder(k, axis, sin, cos, wanted.M)
-		tried = true
 	}
-	return tried
+	return true
 }
 
 // worthTrying reports whether a cylinder of k steps could leave less than the best power found, the best cylinder at
 // that axis and what is left across it being given. The cylinder leaves half its error in J; the effectivity of a lens changes that by some
-// per cent, for which it is let off a third.
+// per cent, for which it is let off a third. Nothing is worth it while no front surface gave any power. While no power was found it is not: no front surface gives any.
 func (s *search) worthTrying(k int, best unit.Dioptre, across float64) bool {
 	off := float64(s.cylinder.At(k)-best) / 2
 	least := math.Sqrt(float64(off*off)+float64(across*across)) * (2.0 / 3)
-	return !s.found || least <= float64(s.blur)
+	return s.found && least <= float64(s.blur)
 }
 
 func (s *search) tryCylinder(k int, axis unit.Degree, sin, cos float64, mean unit.Dioptre) {
