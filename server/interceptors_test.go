@@ -1,0 +1,215 @@
+package server
+
+import (
+	"bytes"
+	"context"
+	"errors"
+	"log/slog"
+	"strings"
+	"testing"
+	"time"
+
+	"google.golang.org/grpc"
+	"google.golang.org/grpc/codes"
+	healthpb "google.golang.org/grpc/health/grpc_health_v1"
+	"google.golang.org/grpc/metadata"
+	reflectionv1 "google.golang.org/grpc/reflection/grpc_reflection_v1"
+	reflectionv1alpha "google.golang.org/grpc/reflection/grpc_reflection_v1alpha"
+	"google.golang.org/grpc/status"
+
+	"go.uber.org/goleak"
+
+	"meniscus.example/optics/unit"
+	pb "meniscus.example/proto/meniscus/v1"
+)
+
+func TestMain(m *testing.M) { goleak.VerifyTestMain(m) }
+
+func TestTheRequestIDComesBack(t *testing.T) {
+	t.Parallel()
+	client := pb.NewFittingServiceClient(dial(t, New(Options{})))
+	for id, want := range map[string]int{"abc-123": 1, strings.Repeat("x", 128): 1, strings.Repeat("x", 129): 0, "": 0} {
+		for _, req := range []*pb.FitRequest{fitRequest(), {}} {
+			var header metadata.MD
+			ctx := metadata.AppendToOutgoingContext(context.Background(), requestIDKey, id)
+			_, _ = client.Fit(ctx, req, grpc.Header(&header)) // also on an error
+			if got := header.Get(requestIDKey); len(got) != want || want == 1 && got[0] != id {
+				t.Errorf("sent %q, got %q", id, got)
+			}
+		}
+	}
+}
+
+// A number of a request stands in no line of the log, whatever comes of the request.
+func TestTheLogHoldsNoClinicalValue(t *testing.T) {
+	t.Parallel()
+	var log bytes.Buffer
+	s := New(Options{Log: slog.New(slog.NewTextHandler(&log, &slog.HandlerOptions{Level: slog.LevelDebug}))})
+	client := pb.NewFittingServiceClient(dial(t, s))
+	ctx := metadata.AppendToOutgoingContext(context.Background(), requestIDKey, "correlate-me")
+	const canary = 7.654321
+	for _, change := range []func(*pb.FitRequest){
+		func(r *pb.FitRequest) { r.GetEye().GetRefraction().SetSphereD(-canary) },
+		func(r *pb.FitRequest) { r.GetEye().GetKeratometry().GetSteep().SetRadiusMm(canary) },
+		func(r *pb.FitRequest) { r.GetEye().GetKeratometry().GetSteep().SetPowerD(canary) },
+		func(r *pb.FitRequest) { r.GetEye().GetRefraction().SetCylinderD(1000 * canary) },
+		func(r *pb.FitRequest) {
+			p := &pb.SphereCylinder{}
+			p.SetSphereD(10 * canary)
+			r.SetLens(pb.Lens_builder{Power: p}.Build())
+		},
+	} {
+		req := fitRequest()
+		change(req)
+		_, _ = client.Fit(ctx, req) // an answer or an error
+	}
+	out := log.String()
+	if lines := strings.Count(out, "msg=call"); lines != 5 {
+		t.Errorf("%d lines of calls: %s", lines, out)
+	}
+	for _, want := range []string{"request_id=correlate-me", "code=OK", "code=InvalidArgument", "reason=INVALID_FIELDS", "reason=IMPOSSIBLE_LENS", "method=/meniscus.v1.FittingService/Fit", "duration="} {
+		if !strings.Contains(out, want) {
+			t.Errorf("no %s in %s", want, out)
+		}
+	}
+	for _, never := range []string{"654", "43.2", "refraction", "sphere"} {
+		if strings.Contains(strings.ToLower(out), never) {
+			t.Errorf("%s in %s", never, out)
+		}
+	}
+}
+
+// A panic becomes INTERNAL, tells the caller nothing, and the next call is answered.
+func TestAPanicIsNobodyElsesProblem(t *testing.T) {
+	t.Parallel()
+	var log bytes.Buffer
+	chain := chained(interceptors(slog.New(slog.NewTextHandler(&log, nil))))
+	info := &grpc.UnaryServerInfo{FullMethod: "/x/Y"}
+	_, err := chain(context.Background(), nil, info, func(context.Context, any) (any, error) { panic("secret 7.654321") })
+	code, reason, _ := details(t, err)
+	if code != codes.Internal || reason != reasonInternal || strings.Contains(err.Error(), "secret") || strings.Contains(log.String(), "secret") {
+		t.Errorf("%v; log %s", err, log.String())
+	}
+	if !strings.Contains(log.String(), "panic") || !strings.Contains(log.String(), "level=ERROR") {
+		t.Errorf("log %s", log.String())
+	}
+	res, err := chain(context.Background(), nil, info, func(context.Context, any) (any, error) { return 1, nil })
+	if res != 1 || err != nil {
+		t.Error(res, err)
+	}
+}
+
+func TestNothingIsComputedForACallerWhoHasGone(t *testing.T) {
+	t.Parallel()
+	s := New(Options{})
+	gone, cancel := context.WithCancel(context.Background())
+	cancel()
+	late, cancelLate := context.WithDeadline(context.Background(), time.Now().Add(-time.Second))
+	defer cancelLate()
+	for ctx, want := range map[context.Context]codes.Code{gone: codes.Canceled, late: codes.DeadlineExceeded} {
+		_, err := s.Call(ctx, pb.FittingService_Fit_FullMethodName, func(any) error { return nil })
+		if code, _, _ := details(t, err); code != want {
+			t.Errorf("%v, want %v", err, want)
+		}
+	}
+}
+
+func TestEveryMethodOfTheSchemaIsAnsweredOrSaidNotToBe(t *testing.T) {
+	t.Parallel()
+	s := New(Options{})
+	served := 0
+	for _, name := range s.Methods() {
+		_, err := s.Call(context.Background(), name, func(any) error { return nil })
+		switch code, reason, _ := details(t, err); {
+		case code == codes.Unimplemented && reason == reasonNotServed:
+		case code == codes.OK || code == codes.InvalidArgument:
+			served++
+		default:
+			t.Errorf("%s: %v", name, err)
+		}
+	}
+	if served != 7 {
+		t.Errorf("%d methods are served", served)
+	}
+	_, err := s.Call(context.Background(), "/meniscus.v1.FittingService/Nothing", func(any) error { return nil })
+	if code, reason, _ := details(t, err); code != codes.Unimplemented || reason != reasonNotServed {
+		t.Error(err)
+	}
+	stream, err := pb.NewFittingServiceClient(dial(t, s)).FitStream(context.Background())
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, err = stream.Recv()
+	if code, reason, _ := details(t, err); code != codes.Unimplemented || reason != reasonNotServed {
+		t.Error(err)
+	}
+}
+
+func TestErrorsOfTheCoreBecomeStatuses(t *testing.T) {
+	t.Parallel()
+	for _, c := range []struct {
+		err    error
+		code   codes.Code
+		reason string
+	}{
+		{&unit.FieldError{Field: "a.b", Problem: "is wrong"}, codes.InvalidArgument, reasonInvalidFields},
+		{&unit.ImpossibleError{Fields: []string{"a"}, Problem: "cannot be", Remedy: "try b"}, codes.FailedPrecondition, reasonImpossibleLens},
+		{errors.New("secret"), codes.Internal, reasonInternal},
+	} {
+		err := statusFrom(c.err)
+		code, reason, _ := details(t, err)
+		if code != c.code || reason != c.reason || strings.Contains(err.Error(), "secret") {
+			t.Errorf("%v: %v", c.err, err)
+		}
+	}
+}
+
+func TestHealthAndReflectionAnswer(t *testing.T) {
+	t.Parallel()
+	s := New(Options{})
+	conn := dial(t, s)
+	ctx, cancel := context.WithTimeout(context.Background(), 10*time.Second)
+	defer cancel()
+	health := healthpb.NewHealthClient(conn)
+	for _, name := range []string{"", "meniscus.v1.FittingService", "meniscus.v1.ChartService"} {
+		res, err := health.Check(ctx, &healthpb.HealthCheckRequest{Service: name})
+		if err != nil || res.GetStatus() != healthpb.HealthCheckResponse_SERVING {
+			t.Errorf("%q: %v, %v", name, res, err)
+		}
+	}
+	if _, err := health.Check(ctx, &healthpb.HealthCheckRequest{Service: "nothing"}); status.Code(err) != codes.NotFound {
+		t.Error(err)
+	}
+	watch, err := health.Watch(ctx, &healthpb.HealthCheckRequest{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if res, err := watch.Recv(); err != nil || res.GetStatus() != healthpb.HealthCheckResponse_SERVING {
+		t.Errorf("%v, %v", res, err)
+	}
+	s.health.Shutdown()
+	if res, err := watch.Recv(); err != nil || res.GetStatus() != healthpb.HealthCheckResponse_NOT_SERVING {
+		t.Errorf("%v, %v", res, err)
+	}
+
+	v1, err := reflectionv1.NewServerReflectionClient(conn).ServerReflectionInfo(ctx)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := v1.Send(&reflectionv1.ServerReflectionRequest{MessageRequest: &reflectionv1.ServerReflectionRequest_ListServices{}}); err != nil {
+		t.Fatal(err)
+	}
+	if res, err := v1.Recv(); err != nil || !strings.Contains(res.String(), "meniscus.v1.FittingService") {
+		t.Errorf("%v, %v", res, err)
+	}
+	alpha, err := reflectionv1alpha.NewServerReflectionClient(conn).ServerReflectionInfo(ctx)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := alpha.Send(&reflectionv1alpha.ServerReflectionRequest{MessageRequest: &reflectionv1alpha.ServerReflectionRequest_ListServices{}}); err != nil {
+		t.Fatal(err)
+	}
+	if res, err := alpha.Recv(); err != nil || !strings.Contains(res.String(), "meniscus.v1.FittingService") {
+		t.Errorf("%v, %v", res, err)
+	}
+}
