@@ -13,7 +13,7 @@ import (
 const notice = "A calculated starting point, to be confirmed on the eye by a licensed practitioner under local rules. It diagnoses " +
 	"nothing, and nothing about a patient is stored."
 
-func provenance() *pb.Provenance {
+func makeProvenance() *pb.Provenance {
 	return pb.Provenance_builder{
 		EngineVersion: proto.String(Version),
 		SchemaVersion: proto.String("meniscus.v1"),
@@ -66,40 +66,58 @@ func refraction(v vergence.PowerVector, form pb.CylinderForm, vertex unit.Millim
 	return m
 }
 
-// cautions writes the cautions of an answer; prefix goes before the paths of their fields.
-func cautions(list []fitting.Caution, prefix string) []*pb.Caution {
+// cautions writes the cautions of an answer.
+func cautions(list []fitting.Caution) []*pb.Caution {
 	out := make([]*pb.Caution, len(list))
 	for i, c := range list {
-		rule := fitting.RuleOf(c.Code)
-		m := &pb.Caution{}
-		m.SetCode(pb.CautionCode(c.Code))
-		m.SetSeverity(pb.Severity(c.Severity))
-		m.SetMessage(c.Message())
-		m.SetAction(rule.Action)
-		m.SetSource(rule.Source)
-		if c.Unit != "" {
-			m.SetValue(c.Value)
-			m.SetLimit(c.Limit)
-			m.SetUnit(c.Unit)
+		if c.Code == fitting.StartingPoint {
+			out[i] = startingPoint
+			continue
 		}
-		if c.Field != "" {
-			m.SetField(prefix + c.Field)
-		}
-		out[i] = m
+		out[i] = caution(c)
 	}
 	return out
 }
 
-func choices(list []fitting.Choice) []*pb.Choice {
-	out := make([]*pb.Choice, len(list))
-	for i, c := range list {
-		m := &pb.Choice{}
-		m.SetField(c.Field)
-		m.SetRule(c.Rule)
-		m.SetSource(c.Source)
-		out[i] = m
+func caution(c fitting.Caution) *pb.Caution {
+	rule := fitting.RuleOf(c.Code)
+	m := &pb.Caution{}
+	m.SetCode(pb.CautionCode(c.Code))
+	m.SetSeverity(pb.Severity(c.Severity))
+	m.SetMessage(c.Message())
+	m.SetAction(rule.Action)
+	m.SetSource(rule.Source)
+	if c.Unit != "" {
+		m.SetValue(c.Value)
+		m.SetLimit(c.Limit)
+		m.SetUnit(c.Unit)
 	}
-	return out
+	if c.Field != "" {
+		m.SetField(c.Field)
+	}
+	return m
+}
+
+// The parts of answers that are the same in every one, made once. They are shared between answers, which nobody changes: what a handler
+// returns is only ever written to the wire, or copied.
+var (
+	provenance    = makeProvenance()
+	startingPoint = caution(fitting.Caution{Code: fitting.StartingPoint, Severity: fitting.RuleOf(fitting.StartingPoint).Severity})
+	fixedChoices  = func() map[*fitting.Choice]*pb.Choice {
+		all := map[*fitting.Choice]*pb.Choice{}
+		for _, c := range fitting.AllChoices() {
+			all[c] = choice(c)
+		}
+		return all
+	}()
+)
+
+func choice(c *fitting.Choice) *pb.Choice {
+	m := &pb.Choice{}
+	m.SetField(c.Field)
+	m.SetRule(c.Rule)
+	m.SetSource(c.Source)
+	return m
 }
 
 func derivation(steps []fitting.Step) []*pb.DerivationStep {

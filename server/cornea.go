@@ -56,14 +56,14 @@ func (s corneaService) DescribeCornea(_ context.Context, req *pb.DescribeCorneaR
 	m.SetFrontSurfacePower(sphereCylinderOf(k.FrontPower().PlusCylinder()))
 	m.SetAsphericityQ(float64(k.Shape().Asphericity()))
 	m.SetSagittalHeights(sags)
-	m.SetCautions(cautions(c.All(), ""))
+	m.SetCautions(cautions(c.All()))
 	if req.GetExplain() {
 		m.SetDerivation(derivation(fitting.DeriveCornea(k)))
 	}
 	if !given.Given() {
-		m.SetChoices(choices([]fitting.Choice{fitting.ChoiceOfShape()}))
+		m.SetChoices([]*pb.Choice{fixedChoices[fitting.ChoiceOfShape()]})
 	}
-	m.SetProvenance(provenance())
+	m.SetProvenance(provenance)
 	return m, nil
 }
 

@@ -2,8 +2,7 @@ package server
 
 import (
 	"context"
-	"fmt"
-	"strings"
+	"strconv"
 
 	"meniscus.example/optics/fitting"
 	"meniscus.example/optics/unit"
@@ -39,11 +38,11 @@ func fitResponse(req *pb.FitRequest, r *fitting.Result) *pb.FitResponse {
 	m.SetOverRefraction(refraction(r.OverWorn, form, r.Spectacle.Vertex()))
 	m.SetResidual(residual(r))
 	m.SetOxygen(oxygen(req.GetLens().GetMaterial(), r))
-	m.SetCautions(cautions(r.Cautions(), ""))
+	m.SetCautions(cautions(r.Cautions()))
 	if req.GetPlan().GetExplain() {
 		m.SetDerivation(derivation(r.Derivation()))
 	}
-	m.SetProvenance(provenance())
+	m.SetProvenance(provenance)
 	m.SetChoices(fitChoices(r))
 	if req.GetEye().HasSide() {
 		m.SetSide(req.GetEye().GetSide())
@@ -125,23 +124,32 @@ func oxygen(given *pb.Material, r *fitting.Result) *pb.Oxygen {
 
 // fitChoices are the choices, with what was compared where the toricity was one.
 func fitChoices(r *fitting.Result) []*pb.Choice {
-	out := choices(r.Choices())
-	compared := r.Compared()
-	if len(compared) == 0 {
-		return out
-	}
-	text := make([]string, len(compared))
-	for i, c := range compared {
-		name := c.Toricity.String()
-		if c.Effect != fitting.NoEffect {
-			name += " (" + c.Effect.String() + ")"
-		}
-		text[i] = fmt.Sprintf("%s leaves %.2f D", name, float64(c.Residual))
-	}
-	for _, m := range out {
-		if m.GetField() == "lens.toricity" {
-			m.SetRule(m.GetRule() + "; astigmatism compared: " + strings.Join(text, ", "))
+	list := r.Choices()
+	out := make([]*pb.Choice, len(list))
+	for i, c := range list {
+		out[i] = fixedChoices[c]
+		if c == fitting.ChoiceOfToricity() {
+			out[i] = choice(c)
+			out[i].SetRule(c.Rule + compared(r.Compared()))
 		}
 	}
 	return out
+}
+
+// compared says what was compared.
+func compared(list []fitting.Candidate) string {
+	text := make([]byte, 0, 200)
+	text = append(text, "; astigmatism compared:"...)
+	for i, c := range list {
+		if i > 0 {
+			text = append(text, ',')
+		}
+		text = append(append(text, ' '), c.Toricity.String()...)
+		if c.Effect != fitting.NoEffect {
+			text = append(append(append(text, " ("...), c.Effect.String()...), ')')
+		}
+		text = append(text, " leaves "...)
+		text = append(strconv.AppendFloat(text, float64(c.Residual), 'f', 2, 64), " D"...)
+	}
+	return string(text)
 }

@@ -51,11 +51,11 @@ func (s refractionService) TransferVertex(_ context.Context, req *pb.TransferVer
 	m.SetPower(sphereCylinder(moved, req.GetCylinderForm()))
 	m.SetPowerVector(powerVector(moved))
 	m.SetVertexDistanceMm(float64(to) + 0)
-	m.SetCautions(cautions(c.All(), ""))
+	m.SetCautions(cautions(c.All()))
 	if req.GetExplain() {
 		m.SetDerivation(derivation(fitting.DeriveTransfer(at, to, moved)))
 	}
-	m.SetProvenance(provenance())
+	m.SetProvenance(provenance)
 	return m, nil
 }
 
@@ -83,11 +83,11 @@ func (s refractionService) Combine(_ context.Context, req *pb.CombineRequest) (*
 	m := &pb.CombineResponse{}
 	m.SetPower(sphereCylinder(sum, req.GetCylinderForm()))
 	m.SetPowerVector(powerVector(sum))
-	m.SetCautions(cautions(c.All(), ""))
+	m.SetCautions(cautions(c.All()))
 	if req.GetExplain() {
 		m.SetDerivation(derivation(fitting.DeriveCombine(terms)))
 	}
-	m.SetProvenance(provenance())
+	m.SetProvenance(provenance)
 	return m, nil
 }
 
@@ -115,11 +115,11 @@ func (s refractionService) Express(_ context.Context, req *pb.ExpressRequest) (*
 	m.SetPowerVector(powerVector(turned))
 	m.SetMeridians(meridians(turned))
 	m.SetBlurStrengthD(float64(turned.Blur()))
-	m.SetCautions(cautions(c.All(), ""))
+	m.SetCautions(cautions(c.All()))
 	if req.GetExplain() {
 		m.SetDerivation(derivation(fitting.DeriveExpress(written, given, turn, turned)))
 	}
-	m.SetProvenance(provenance())
+	m.SetProvenance(provenance)
 	return m, nil
 }
 

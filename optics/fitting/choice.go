@@ -95,13 +95,28 @@ var (
 	}
 )
 
+var choiceShape = Choice{
+	"cornea_shape",
+	"asphericity Q = -0.26, a mean of adults, since none was given",
+	"Navarro's eye (7.72 mm, Q -0.26); populations -0.24 ± 0.10, n = 500, and -0.30 ± 0.12, n = 1052 (PMC10926314)",
+}
+
+// ChoiceOfToricity is the choice that Result.Compared belongs to.
+//
+// Source: it names its own.
+func ChoiceOfToricity() *Choice { return &choiceToricity }
+
 // ChoiceOfShape is the choice of a corneal shape where none was given.
 //
 // Source: it names its own.
-func ChoiceOfShape() Choice {
-	return Choice{
-		"cornea_shape",
-		"asphericity Q = -0.26, a mean of adults, since none was given",
-		"Navarro's eye (7.72 mm, Q -0.26); populations -0.24 ± 0.10, n = 500, and -0.30 ± 0.12, n = 1052 (PMC10926314)",
+func ChoiceOfShape() *Choice { return &choiceShape }
+
+// AllChoices are the choices that an answer may hold. They are not to be changed.
+//
+// Source: each names its own.
+func AllChoices() []*Choice {
+	return []*Choice{
+		&choiceApex, &choiceRadius, &choiceSteepRadius, &choiceFlatMeridian, &choiceDiameterOfIris, &choiceDiameter, &choiceZoneOfPupil, &choiceZone,
+		&choiceThickness, &choiceIndex, &choicePower, &choiceToricity, &choiceToricityOfLens, &choiceShape,
 	}
 }

@@ -65,15 +65,15 @@ type Result struct {
 	AcuityLog float64              // the predicted loss of acuity in logMAR, dimensionless
 	Acuity    float64              // the predicted decimal acuity, dimensionless
 
-	choices  list[Choice]
+	choices  list[*Choice]
 	compared list[Candidate]
 	cautions Cautions
 }
 
-// Choices are what the input left open and how it was decided.
+// Choices are what the input left open and how it was decided: some of AllChoices, not to be changed.
 //
 // Source: definition.
-func (r *Result) Choices() []Choice { return r.choices.all() }
+func (r *Result) Choices() []*Choice { return r.choices.all() }
 
 // Compared are the lenses that were compared where the toricity was chosen.
 //
@@ -123,7 +123,7 @@ const (
 func (c *Case) Fit() (Result, error) {
 	r := Result{Spectacle: c.refraction, Ocular: c.refraction.Ocular(), Cornea: c.cornea, Layer: c.layer}
 	if !c.apexGiven {
-		r.choices.add(choiceApex)
+		r.choices.add(&choiceApex)
 	}
 	c.dimensions(&r)
 	flat := c.flatRadius(&r)
@@ -132,19 +132,19 @@ func (c *Case) Fit() (Result, error) {
 		return Result{}, err
 	}
 	if d.toricity.toricBack() && !c.lens.SteepRadius.Given() {
-		r.choices.add(choiceSteepRadius)
+		r.choices.add(&choiceSteepRadius)
 	}
 	if d.toricity.toricBack() && !c.lens.FlatMeridian.Given() {
-		r.choices.add(choiceFlatMeridian)
+		r.choices.add(&choiceFlatMeridian)
 	}
 	if !c.lens.CentreThickness.Given() {
-		r.choices.add(choiceThickness)
+		r.choices.add(&choiceThickness)
 	}
 	if !c.lens.Index.Given() {
-		r.choices.add(choiceIndex)
+		r.choices.add(&choiceIndex)
 	}
 	if !c.lens.Power.Given() {
-		r.choices.add(choicePower)
+		r.choices.add(&choicePower)
 	}
 	r.Toricity, r.Effect, r.Radii, r.Body = d.toricity, d.effect, d.radii, d.body
 	r.Wanted, r.Over = d.wanted, d.over
@@ -176,10 +176,10 @@ func (c *Case) dimensions(r *Result) {
 	if r.Diameter, given = c.lens.Diameter.Get(); !given {
 		iris, known := c.iris.Get()
 		if known {
-			r.choices.add(choiceDiameterOfIris)
+			r.choices.add(&choiceDiameterOfIris)
 		} else {
 			iris = usualIris
-			r.choices.add(choiceDiameter)
+			r.choices.add(&choiceDiameter)
 		}
 		r.Diameter = unit.Millimetre(math.Round(float64(min(iris-smallerThanIris, WidestRigid))*10) / 10)
 	}
@@ -187,10 +187,10 @@ func (c *Case) dimensions(r *Result) {
 		widest := r.Diameter - leastPeriphery
 		if pupil, known := c.pupil.Get(); known {
 			r.ZoneDiameter = min(pupil+widerThanPupil, widest)
-			r.choices.add(choiceZoneOfPupil)
+			r.choices.add(&choiceZoneOfPupil)
 		} else {
 			r.ZoneDiameter = min(r.Diameter-usualPeriphery, widest)
-			r.choices.add(choiceZone)
+			r.choices.add(&choiceZone)
 		}
 		r.ZoneDiameter = unit.Millimetre(math.Round(float64(r.ZoneDiameter)*10) / 10)
 	}
@@ -201,7 +201,7 @@ func (c *Case) flatRadius(r *Result) unit.Millimetre {
 	if flat, given := c.lens.BackRadius.Get(); given {
 		return flat
 	}
-	r.choices.add(choiceRadius)
+	r.choices.add(&choiceRadius)
 	flat := c.radius.Round(unit.KeratometricRadius(c.cornea.FlatK()+c.offset, cornea.KeratometricIndex))
 	if steep, given := c.lens.SteepRadius.Get(); given {
 		flat = max(flat, steep)
@@ -248,7 +248,7 @@ func (c *Case) chooseDesign(r *Result, flat unit.Millimetre) (design, error) {
 		case kept.Cylinder != 0:
 			t = FrontToric
 		}
-		r.choices.add(choiceToricityOfLens)
+		r.choices.add(&choiceToricityOfLens)
 		return c.design(r, t, NoEffect, flat)
 	}
 
@@ -268,7 +268,7 @@ func (c *Case) chooseDesign(r *Result, flat unit.Millimetre) (design, error) {
 	default:
 		kinds = []kind{{Spherical, NoEffect}, {FrontToric, NoEffect}}
 	}
-	r.choices.add(choiceToricity)
+	r.choices.add(&choiceToricity)
 	var best design
 	for i, k := range kinds {
 		d, err := c.design(r, k.toricity, k.effect, flat)
