@@ -3,6 +3,7 @@ package server
 import (
 	"context"
 	"strconv"
+	"sync"
 
 	"meniscus.example/optics/fitting"
 	"meniscus.example/optics/unit"
@@ -15,17 +16,31 @@ type fittingService struct {
 	door *door
 }
 
+// work is what a fit needs while it runs: kept off the stack, which would have to grow for it in every new goroutine. It is wiped
+// when the fit is done.
+type work struct {
+	fit    fitting.Case
+	result fitting.Result
+}
+
+var scratch = sync.Pool{New: func() any { return new(work) }}
+
+func (w *work) done() {
+	*w = work{}
+	scratch.Put(w)
+}
+
 // Fit computes the lens for one eye.
 func (s fittingService) Fit(_ context.Context, req *pb.FitRequest) (*pb.FitResponse, error) {
-	c, err := fitCase(s.door, req)
-	if err != nil {
+	w := scratch.Get().(*work)
+	defer w.done()
+	if err := fitCase(&w.fit, s.door, req); err != nil {
 		return nil, err
 	}
-	r, err := c.Fit()
-	if err != nil {
+	if err := w.fit.Fit(&w.result); err != nil {
 		return nil, statusFrom(err)
 	}
-	return fitResponse(req, &r), nil
+	return fitResponse(req, &w.result), nil
 }
 
 func fitResponse(req *pb.FitRequest, r *fitting.Result) *pb.FitResponse {

@@ -81,9 +81,9 @@ var toricities = map[pb.Toricity]fitting.Toricity{
 	pb.Toricity_TORICITY_BITORIC:   fitting.Bitoric,
 }
 
-// fitCase parses a FitRequest. What is missing, or is in the schema and not offered by this version, is a fault; nothing that
+// fitCase parses a FitRequest into c. What is missing, or is in the schema and not offered by this version, is a fault; nothing that
 // was sent is passed over in silence.
-func fitCase(d *door, req *pb.FitRequest) (fitting.Case, error) {
+func fitCase(c *fitting.Case, d *door, req *pb.FitRequest) error {
 	var v violations
 	d.check(&v, req)
 	eye, lens, plan := req.GetEye(), req.GetLens(), req.GetPlan()
@@ -131,9 +131,10 @@ func fitCase(d *door, req *pb.FitRequest) (fitting.Case, error) {
 	if lens.HasPower() {
 		in.Lens.Power = unit.Some(prescription(lens.GetPower()))
 	}
-	c, faults := fitting.NewCase(in)
+	fit, faults := fitting.NewCase(in)
 	v.merge(faults)
-	return c, v.err()
+	*c = fit
+	return v.err()
 }
 
 // notOffered reports what a FitRequest asks for that this version does not compute.

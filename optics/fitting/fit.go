@@ -39,27 +39,19 @@ type Candidate struct {
 
 // Result is a fit.
 type Result struct {
-	// The lens to order. Radii are those of the back optic zone, Flat and Steep the same where it is spherical.
-	Toricity     Toricity
-	Effect       Effect
-	Radii        surface.Radii
+	// The lens to order: Design, with its diameters.
+	Design
 	ZoneDiameter unit.Millimetre
 	Diameter     unit.Millimetre
-	Body         lens.Body
-	// Power is the back vertex power to order, as written and as it is computed with.
-	Power        vergence.SphereCylinder
-	PowerOrdered lens.BackVertexPower
 
 	// The eye.
 	Spectacle vergence.SpectacleRefraction
 	Ocular    vergence.OcularRefraction
 	Cornea    cornea.Cornea
 
-	// The chain from the cornea to the over-refraction.
+	// The chain from the cornea to the over-refraction, beside what the design has of it.
 	Layer     tear.Layer
 	TearLens  tear.LensPower
-	Wanted    tear.Wanted
-	Over      tear.OverRefraction
 	OverWorn  vergence.PowerVector // the over-refraction at the eye's own vertex distance
 	Blur      unit.Dioptre         // the blur strength of Over.Power
 	AcuityLog float64              // the predicted loss of acuity in logMAR, dimensionless
@@ -116,25 +108,23 @@ const (
 	strongestCylinder unit.Dioptre = 50
 )
 
-// Fit computes the lens to order for the case. It fails with an *unit.ImpossibleError, with paths in the words of the schema, where the values,
-// each fine by itself, can make no lens.
+// Fit computes the lens to order for the case into r, whatever r held. It fails with an *unit.ImpossibleError, with paths in the words of
+// the schema, where the values, each fine by itself, can make no lens.
 //
 // Source: the chain of tear.Layer and lens.Body; the choices name their own sources.
-func (c *Case) Fit() (Result, error) {
-	r := Result{Spectacle: c.refraction, Ocular: c.refraction.Ocular(), Cornea: c.cornea, Layer: c.layer}
+func (c *Case) Fit(r *Result) error {
+	*r = Result{Spectacle: c.refraction, Ocular: c.refraction.Ocular(), Cornea: c.cornea, Layer: c.layer}
 	if !c.apexGiven {
 		r.choices.add(&choiceApex)
 	}
-	c.dimensions(&r)
-	flat := c.flatRadius(&r)
-	d, err := c.chooseDesign(&r, flat)
-	if err != nil {
-		return Result{}, err
+	c.dimensions(r)
+	if err := c.chooseDesign(r, c.flatRadius(r)); err != nil {
+		return err
 	}
-	if d.toricity.toricBack() && !c.lens.SteepRadius.Given() {
+	if r.Toricity.toricBack() && !c.lens.SteepRadius.Given() {
 		r.choices.add(&choiceSteepRadius)
 	}
-	if d.toricity.toricBack() && !c.lens.FlatMeridian.Given() {
+	if r.Toricity.toricBack() && !c.lens.FlatMeridian.Given() {
 		r.choices.add(&choiceFlatMeridian)
 	}
 	if !c.lens.CentreThickness.Given() {
@@ -146,13 +136,11 @@ func (c *Case) Fit() (Result, error) {
 	if !c.lens.Power.Given() {
 		r.choices.add(&choicePower)
 	}
-	r.Toricity, r.Effect, r.Radii, r.Body = d.toricity, d.effect, d.radii, d.body
-	r.Wanted, r.Over = d.wanted, d.over
-	r.Power, r.PowerOrdered = d.power, d.ordered
-	r.TearLens = c.layer.Lens(d.body.Back, c.cornea.Curvature())
+	r.TearLens = c.layer.Lens(r.Body.Back, c.cornea.Curvature())
 
+	var err error
 	if r.OverWorn, err = r.Over.Power.Upstream(c.refraction.Vertex(), unit.Air); err != nil || unanswerable(r.OverWorn) || beyond(r.Over.Power) {
-		return Result{}, &unit.ImpossibleError{
+		return &unit.ImpossibleError{
 			Fields:  []string{"lens.power"},
 			Problem: fmt.Sprintf("is so far from the %+.2f D wanted that no correction before it could make up the difference", float64(r.Wanted.Power.M)),
 			Remedy:  "leave the power out to have it computed",
@@ -161,7 +149,7 @@ func (c *Case) Fit() (Result, error) {
 	r.Blur = r.Over.Power.Blur()
 	r.AcuityLog, r.Acuity = Acuity(r.Blur)
 	r.caution()
-	return r, nil
+	return nil
 }
 
 // unanswerable reports an over-refraction outside what a refraction can be.
@@ -220,25 +208,26 @@ func (c *Case) steepRadius(flat unit.Millimetre) unit.Millimetre {
 	return c.radius.Round(unit.KeratometricRadius(unit.KeratometricPower(flat, cornea.KeratometricIndex)+toricity, cornea.KeratometricIndex))
 }
 
-// design is a lens of one toricity, completed.
-type design struct {
-	toricity Toricity
-	effect   Effect
-	radii    surface.Radii
-	body     lens.Body
-	wanted   tear.Wanted
-	power    vergence.SphereCylinder
-	ordered  lens.BackVertexPower
-	over     tear.OverRefraction
+// Design is a lens of one toricity, completed. Radii are those of the back optic zone, Flat and Steep the same where it is
+// spherical. Power is the back vertex power to order as it is written, PowerOrdered as it is computed with.
+type Design struct {
+	Toricity     Toricity
+	Effect       Effect
+	Radii        surface.Radii
+	Body         lens.Body
+	Wanted       tear.Wanted
+	Power        vergence.SphereCylinder
+	PowerOrdered lens.BackVertexPower
+	Over         tear.OverRefraction
 }
 
 // residual is the cylinder that the lens leaves.
-func (d *design) residual() unit.Dioptre { return 2 * d.over.Power.J() }
+func (d *Design) residual() unit.Dioptre { return 2 * d.Over.Power.J() }
 
 // chooseDesign completes a lens of the toricity that is decided, or of the simplest one that leaves little astigmatism.
-func (c *Case) chooseDesign(r *Result, flat unit.Millimetre) (design, error) {
+func (c *Case) chooseDesign(r *Result, flat unit.Millimetre) error {
 	if c.toricity != Undecided {
-		return c.design(r, c.toricity, NoEffect, flat)
+		return c.design(&r.Design, c.toricity, NoEffect, flat)
 	}
 	if kept, given := c.kept.Get(); given {
 		t := Spherical
@@ -249,7 +238,7 @@ func (c *Case) chooseDesign(r *Result, flat unit.Millimetre) (design, error) {
 			t = FrontToric
 		}
 		r.choices.add(&choiceToricityOfLens)
-		return c.design(r, t, NoEffect, flat)
+		return c.design(&r.Design, t, NoEffect, flat)
 	}
 
 	type kind struct {
@@ -269,40 +258,40 @@ func (c *Case) chooseDesign(r *Result, flat unit.Millimetre) (design, error) {
 		kinds = []kind{{Spherical, NoEffect}, {FrontToric, NoEffect}}
 	}
 	r.choices.add(&choiceToricity)
-	var best design
+	var d Design
 	for i, k := range kinds {
-		d, err := c.design(r, k.toricity, k.effect, flat)
-		if err != nil {
-			return design{}, err
+		if err := c.design(&d, k.toricity, k.effect, flat); err != nil {
+			return err
 		}
 		residual := d.residual()
-		r.compared.add(Candidate{k.toricity, d.effect, residual})
-		switch {
-		case k.toricity == Spherical && astigmatism < toricBackFrom && residual <= sphericalLeaves:
-			return d, nil
-		case k.toricity == Spherical && astigmatism >= toricBackFrom:
-			// Compared, but not stable on such a cornea.
-			continue
-		case k.toricity != Spherical && residual <= acceptableResidual:
-			return d, nil
+		r.compared.add(Candidate{k.toricity, d.Effect, residual})
+		if k.toricity == Spherical && astigmatism >= toricBackFrom {
+			continue // compared, but not stable on such a cornea
 		}
-		if best.toricity == Undecided || residual < best.residual() || i == 0 {
-			best = d
+		limit := acceptableResidual
+		if k.toricity == Spherical {
+			limit = sphericalLeaves
+		}
+		if i == 0 || r.Toricity == Undecided || residual < r.residual() || residual <= limit {
+			r.Design = d
+		}
+		if residual <= limit {
+			return nil
 		}
 	}
-	return best, nil
+	return nil
 }
 
 // design completes a lens of one toricity: its body, the power that it would need, and the power to order.
-func (c *Case) design(r *Result, t Toricity, effect Effect, flat unit.Millimetre) (design, error) {
-	d := design{toricity: t, effect: effect}
-	d.radii = surface.Radii{Flat: flat, Steep: flat, FlatMeridian: c.lens.FlatMeridian.Or(c.cornea.Radii().FlatMeridian).Meridian()}
-	d.body = lens.Body{Back: surface.Spherical(flat), Index: c.lens.Index.Or(usualIndex)}
+func (c *Case) design(d *Design, t Toricity, effect Effect, flat unit.Millimetre) error {
+	*d = Design{Toricity: t, Effect: effect}
+	d.Radii = surface.Radii{Flat: flat, Steep: flat, FlatMeridian: c.lens.FlatMeridian.Or(c.cornea.Radii().FlatMeridian).Meridian()}
+	d.Body = lens.Body{Back: surface.Spherical(flat), Index: c.lens.Index.Or(usualIndex)}
 	if t.toricBack() {
-		d.radii.Steep = c.steepRadius(flat)
-		d.body.Back = d.radii.Curvature()
-		if d.radii.Steep == d.radii.Flat && !c.lens.SteepRadius.Given() {
-			return design{}, &unit.ImpossibleError{
+		d.Radii.Steep = c.steepRadius(flat)
+		d.Body.Back = d.Radii.Curvature()
+		if d.Radii.Steep == d.Radii.Flat && !c.lens.SteepRadius.Given() {
+			return &unit.ImpossibleError{
 				Fields:  []string{"lens.toricity", "eye.keratometry"},
 				Problem: fmt.Sprintf("a %v lens follows the corneal astigmatism, and this cornea has %.2f D", t, float64(c.cornea.Astigmatism())),
 				Remedy:  "a spherical or a front toric lens, or back radii that are given, would work",
@@ -310,29 +299,29 @@ func (c *Case) design(r *Result, t Toricity, effect Effect, flat unit.Millimetre
 		}
 	}
 	var err error
-	if d.wanted, err = c.layer.Required(c.refraction.Ocular(), c.cornea.Curvature(), d.body.Back); err != nil {
-		return design{}, impossiblePower("plan.apex_clearance_um", "the light that the eye needs would come to a focus in the tears")
+	if d.Wanted, err = c.layer.Required(c.refraction.Ocular(), c.cornea.Curvature(), d.Body.Back); err != nil {
+		return impossiblePower("plan.apex_clearance_um", "the light that the eye needs would come to a focus in the tears")
 	}
-	need := d.wanted.Power
+	need := d.Wanted.Power
 	if beyond(need.PowerVector) {
-		return design{}, impossiblePower("eye.refraction.vertex_distance_mm",
+		return impossiblePower("eye.refraction.vertex_distance_mm",
 			fmt.Sprintf("the lens would need a back vertex power of %+.2f D", float64(need.M)))
 	}
-	d.body.CentreThickness = c.lens.CentreThickness.Or(lens.UsualCentreThickness(need.M, c.cornea.Astigmatism()))
+	d.Body.CentreThickness = c.lens.CentreThickness.Or(lens.UsualCentreThickness(need.M, c.cornea.Astigmatism()))
 
-	before, err := c.layer.Need(d.wanted.Back, d.body)
+	before, err := c.layer.Need(d.Wanted.Back, d.Body)
 	if err != nil {
-		return design{}, impossiblePower("lens.centre_thickness_mm", "the light that the eye needs would come to a focus in the lens")
+		return impossiblePower("lens.centre_thickness_mm", "the light that the eye needs would come to a focus in the lens")
 	}
-	s := search{body: d.body, need: before, power: c.power, cylinder: c.cylinder}
+	s := search{body: d.Body, need: before, power: c.power, cylinder: c.cylinder}
 	kept, isKept := c.kept.Get()
-	switch inAir := d.body.BackPower(); {
+	switch inAir := d.Body.BackPower(); {
 	case isKept:
-		d.power, d.ordered = kept, lens.BackVertexPower{PowerVector: kept.Vector()}
+		d.Power, d.PowerOrdered = kept, lens.BackVertexPower{PowerVector: kept.Vector()}
 		if t == BackToric {
-			if off := 2 * d.ordered.Sub(inAir).J(); off > roundedCylinder {
+			if off := 2 * d.PowerOrdered.Sub(inAir).J(); off > roundedCylinder {
 				made := vergence.PowerVector{J0: inAir.J0, J45: inAir.J45}.MinusCylinder()
-				return design{}, &unit.ImpossibleError{
+				return &unit.ImpossibleError{
 					Fields: []string{"lens.power.cylinder_d", "lens.toricity"},
 					Problem: fmt.Sprintf("a back toric lens of these radii has in air the cylinder that its back makes, %+.2f x %.0f",
 						float64(made.Cylinder), float64(made.Axis)),
@@ -340,9 +329,9 @@ func (c *Case) design(r *Result, t Toricity, effect Effect, flat unit.Millimetre
 				}
 			}
 		}
-		d.over, err = before.Worn(d.body, d.ordered)
+		d.Over, err = before.Worn(d.Body, d.PowerOrdered)
 		if err != nil {
-			return design{}, impossiblePower("lens.power", "no front surface can give this power through this thickness")
+			return impossiblePower("lens.power", "no front surface can give this power through this thickness")
 		}
 	default:
 		switch t {
@@ -354,26 +343,26 @@ func (c *Case) design(r *Result, t Toricity, effect Effect, flat unit.Millimetre
 			s.anyAxis(c.axis)
 		case Bitoric:
 			if effect == SphericalPowerEffect {
-				undo := d.body.Back.Power(unit.Air.Less(c.layer.Index))
-				s.spheres(s.fixedCylinder(2*undo.J(), d.radii.FlatMeridian))
+				undo := d.Body.Back.Power(unit.Air.Less(c.layer.Index))
+				s.spheres(s.fixedCylinder(2*undo.J(), d.Radii.FlatMeridian))
 			} else {
-				s.cylinders([2]unit.Degree{d.radii.FlatMeridian, (d.radii.FlatMeridian + 90).Meridian()})
+				s.cylinders([2]unit.Degree{d.Radii.FlatMeridian, (d.Radii.FlatMeridian + 90).Meridian()})
 			}
 		}
 		if !s.found {
-			return design{}, impossiblePower("lens", "no front surface can give the power that the eye needs through this lens")
+			return impossiblePower("lens", "no front surface can give the power that the eye needs through this lens")
 		}
-		d.power, d.ordered, d.over = s.sphereCylinder(), s.ordered, s.over
+		d.Power, d.PowerOrdered, d.Over = s.sphereCylinder(), s.ordered, s.over
 	}
 	if t == Bitoric {
 		// In the tears, the cylinder that turns with the lens.
-		inTears := d.ordered.Add(d.body.Back.Power(c.layer.Index.Less(unit.Air)))
-		d.effect = CylinderPowerEffect
+		inTears := d.PowerOrdered.Add(d.Body.Back.Power(c.layer.Index.Less(unit.Air)))
+		d.Effect = CylinderPowerEffect
 		if 2*inTears.J() <= roundedCylinder {
-			d.effect = SphericalPowerEffect
+			d.Effect = SphericalPowerEffect
 		}
 	}
-	return d, nil
+	return nil
 }
 
 // roundedCylinder is how far a cylinder that was written in steps may lie from the one that is made.

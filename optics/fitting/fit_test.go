@@ -39,7 +39,8 @@ func fit(t testing.TB, in fitting.Input) fitting.Result {
 	if faults != nil {
 		t.Fatalf("%+v: %v", in, errors.Join(faults...))
 	}
-	r, err := c.Fit()
+	var r fitting.Result
+	err := c.Fit(&r)
 	if err != nil {
 		t.Fatalf("%+v: %v", in, err)
 	}
@@ -193,7 +194,7 @@ func TestImpossibleLensesNameTheirFields(t *testing.T) {
 		if faults != nil {
 			t.Fatalf("%s: %v", name, faults)
 		}
-		_, err := k.Fit()
+		err := k.Fit(&fitting.Result{})
 		var impossible *unit.ImpossibleError
 		if !errors.As(err, &impossible) || fmt.Sprint(impossible.Fields) != c.want {
 			t.Errorf("%s: %v, want %v", name, err, c.want)
@@ -280,12 +281,13 @@ func BenchmarkFit(b *testing.B) {
 	} {
 		b.Run(name, func(b *testing.B) {
 			b.ReportAllocs()
+			var r fitting.Result
 			for b.Loop() {
 				c, faults := fitting.NewCase(in)
 				if faults != nil {
 					b.Fatal(faults)
 				}
-				if _, err := c.Fit(); err != nil {
+				if err := c.Fit(&r); err != nil {
 					b.Fatal(err)
 				}
 			}

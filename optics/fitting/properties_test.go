@@ -17,7 +17,8 @@ func solve(t *rapid.T, in fitting.Input) (fitting.Result, bool) {
 	if faults != nil {
 		t.Fatalf("%+v: %v", in, faults)
 	}
-	r, err := c.Fit()
+	var r fitting.Result
+	err := c.Fit(&r)
 	return r, err == nil
 }
 
