@@ -4,7 +4,6 @@ import (
 	"google.golang.org/protobuf/proto"
 
 	"meniscus.example/optics/fitting"
-	"meniscus.example/optics/unit"
 	"meniscus.example/optics/vergence"
 	pb "meniscus.example/proto/meniscus/v1"
 )
@@ -21,49 +20,48 @@ func makeProvenance() *pb.Provenance {
 	}.Build()
 }
 
-// number is a value of a field that is there, without a negative zero.
-func number[T ~float64](x T) *float64 { return proto.Float64(float64(x) + 0) }
-
-// sphereCylinder writes a power in the form asked for.
-func sphereCylinder(v vergence.PowerVector, form pb.CylinderForm) *pb.SphereCylinder {
-	if form == pb.CylinderForm_CYLINDER_FORM_PLUS {
-		return sphereCylinderOf(v.PlusCylinder())
+// inForm writes a power in minus form, or in plus form.
+func inForm(v vergence.PowerVector, plus bool) vergence.SphereCylinder {
+	if plus {
+		return v.PlusCylinder()
 	}
-	return sphereCylinderOf(v.MinusCylinder())
+	return v.MinusCylinder()
 }
 
-func sphereCylinderOf(p vergence.SphereCylinder) *pb.SphereCylinder {
-	m := &pb.SphereCylinder{}
+// setWritten sets a power as it is written, without a negative zero. Without a cylinder there is no axis.
+func setWritten(m interface {
+	SetSphereD(float64)
+	SetCylinderD(float64)
+	SetAxisDeg(float64)
+}, p vergence.SphereCylinder) {
 	m.SetSphereD(float64(p.Sphere) + 0)
 	m.SetCylinderD(float64(p.Cylinder) + 0)
 	if p.Axis != 0 {
 		m.SetAxisDeg(float64(p.Axis))
 	}
+}
+
+// sphereCylinder writes a power in the form asked for.
+func sphereCylinder(v vergence.PowerVector, form pb.CylinderForm) *pb.SphereCylinder {
+	return sphereCylinderOf(inForm(v, form == pb.CylinderForm_CYLINDER_FORM_PLUS))
+}
+
+func sphereCylinderOf(p vergence.SphereCylinder) *pb.SphereCylinder {
+	m := &pb.SphereCylinder{}
+	setWritten(m, p)
 	return m
 }
 
 func powerVector(v vergence.PowerVector) *pb.PowerVector {
 	m := &pb.PowerVector{}
-	m.SetMeanD(float64(v.M) + 0)
-	m.SetJ0D(float64(v.J0) + 0)
-	m.SetJ45D(float64(v.J45) + 0)
+	setVector(m, v)
 	return m
 }
 
-// refraction writes a power at a vertex distance.
-func refraction(v vergence.PowerVector, form pb.CylinderForm, vertex unit.Millimetre) *pb.Refraction {
-	p := v.MinusCylinder()
-	if form == pb.CylinderForm_CYLINDER_FORM_PLUS {
-		p = v.PlusCylinder()
-	}
-	m := &pb.Refraction{}
-	m.SetSphereD(float64(p.Sphere) + 0)
-	m.SetCylinderD(float64(p.Cylinder) + 0)
-	if p.Axis != 0 {
-		m.SetAxisDeg(float64(p.Axis))
-	}
-	m.SetVertexDistanceMm(float64(vertex) + 0)
-	return m
+func setVector(m *pb.PowerVector, v vergence.PowerVector) {
+	m.SetMeanD(float64(v.M) + 0)
+	m.SetJ0D(float64(v.J0) + 0)
+	m.SetJ45D(float64(v.J45) + 0)
 }
 
 // cautions writes the cautions of an answer.

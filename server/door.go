@@ -3,6 +3,7 @@ package server
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -32,10 +33,12 @@ type plan struct {
 type check struct {
 	field    protoreflect.FieldDescriptor
 	kind     protoreflect.Kind
+	list     bool
 	name     string
 	quantity *pb.Quantity // of a number
 	min, max float64
-	message  *plan // of a message
+	enum     []protoreflect.EnumNumber // of an enum: its values
+	message  *plan                     // of a message
 }
 
 // newDoor makes the plans of the given messages and of all that they hold.
@@ -55,12 +58,16 @@ func (d *door) plan(m protoreflect.MessageDescriptor) *plan {
 	d.plans[m.FullName()] = p
 	for i := range m.Fields().Len() {
 		f := m.Fields().Get(i)
-		c := check{field: f, kind: f.Kind(), name: string(f.Name())}
+		c := check{field: f, kind: f.Kind(), list: f.IsList(), name: string(f.Name())}
 		switch f.Kind() {
 		case protoreflect.MessageKind:
 			c.message = d.plan(f.Message())
 		case protoreflect.BoolKind:
 			continue
+		case protoreflect.EnumKind:
+			for j := range f.Enum().Values().Len() {
+				c.enum = append(c.enum, f.Enum().Values().Get(j).Number())
+			}
 		default:
 			if q, ok := proto.GetExtension(f.Options(), pb.E_Quantity).(*pb.Quantity); ok && q.HasMinimum() {
 				c.quantity, c.min, c.max = q, q.GetMinimum(), q.GetMaximum()
@@ -83,15 +90,21 @@ func (d *door) check(v *violations, m proto.Message) {
 func (p *plan) check(v *violations, r protoreflect.Message) {
 	for i := range p.fields {
 		c := &p.fields[i]
-		if !r.Has(c.field) {
+		switch {
+		case c.list:
+		case c.message != nil:
+			// Of a message that is not there Get gives one that is not valid: cheaper than to ask first.
+			if m := r.Get(c.field); m.Message().IsValid() {
+				c.one(v, m, "")
+			}
+			continue
+		default:
+			if r.Has(c.field) {
+				c.one(v, r.Get(c.field), "")
+			}
 			continue
 		}
-		value := r.Get(c.field)
-		if !c.field.IsList() {
-			c.one(v, value, "")
-			continue
-		}
-		list := value.List()
+		list := r.Get(c.field).List()
 		if list.Len() > mostItems {
 			v.add(c.name, fmt.Sprintf("has %d items, more than %d", list.Len(), mostItems), "")
 			continue
@@ -134,8 +147,8 @@ func (c *check) problem(value protoreflect.Value) (problem, looksLike string) {
 			return c.outside(x)
 		}
 	case protoreflect.EnumKind:
-		values := c.field.Enum().Values()
-		if values.ByNumber(value.Enum()) == nil {
+		if !slices.Contains(c.enum, value.Enum()) {
+			values := c.field.Enum().Values()
 			var known []string
 			for i := 1; i < values.Len(); i++ {
 				known = append(known, string(values.Get(i).Name()))

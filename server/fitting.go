@@ -43,15 +43,38 @@ func (s fittingService) Fit(_ context.Context, req *pb.FitRequest) (*pb.FitRespo
 	return fitResponse(req, &w.result), nil
 }
 
+// fitAnswer is a response and the messages in it that every fit has: made in one piece, since making them one by one costs more than
+// the fit.
+type fitAnswer struct {
+	response                           pb.FitResponse
+	lens                               pb.Lens
+	back                               pb.BackSurface
+	material                           pb.Material
+	power, required, ocular, tearPower pb.SphereCylinder
+	tears                              pb.TearLens
+	tearVector, residualVector         pb.PowerVector
+	over                               pb.Refraction
+	residual                           pb.Residual
+}
+
 func fitResponse(req *pb.FitRequest, r *fitting.Result) *pb.FitResponse {
-	form := req.GetPlan().GetCylinderForm()
-	m := &pb.FitResponse{}
-	m.SetLens(lensToOrder(req.GetLens(), r, form))
-	m.SetRequiredPower(sphereCylinder(r.Wanted.Power.PowerVector, form))
-	m.SetOcularRefraction(sphereCylinder(r.Ocular.PowerVector, form))
-	m.SetTearLens(tearLens(r, form))
-	m.SetOverRefraction(refraction(r.OverWorn, form, r.Spectacle.Vertex()))
-	m.SetResidual(residual(r))
+	plus := req.GetPlan().GetCylinderForm() == pb.CylinderForm_CYLINDER_FORM_PLUS
+	a := &fitAnswer{}
+	a.lensToOrder(req.GetLens(), r, plus)
+	setWritten(&a.required, inForm(r.Wanted.Power.PowerVector, plus))
+	setWritten(&a.ocular, inForm(r.Ocular.PowerVector, plus))
+	a.tearLens(r, plus)
+	setWritten(&a.over, inForm(r.OverWorn, plus))
+	a.over.SetVertexDistanceMm(float64(r.Spectacle.Vertex()))
+	a.setResidual(r)
+
+	m := &a.response
+	m.SetLens(&a.lens)
+	m.SetRequiredPower(&a.required)
+	m.SetOcularRefraction(&a.ocular)
+	m.SetTearLens(&a.tears)
+	m.SetOverRefraction(&a.over)
+	m.SetResidual(&a.residual)
 	m.SetOxygen(oxygen(req.GetLens().GetMaterial(), r))
 	m.SetCautions(cautions(r.Cautions()))
 	if req.GetPlan().GetExplain() {
@@ -66,15 +89,15 @@ func fitResponse(req *pb.FitRequest, r *fitting.Result) *pb.FitResponse {
 }
 
 // lensToOrder is the lens, complete. What was given of the material is given back.
-func lensToOrder(given *pb.Lens, r *fitting.Result, form pb.CylinderForm) *pb.Lens {
-	back := &pb.BackSurface{}
+func (a *fitAnswer) lensToOrder(given *pb.Lens, r *fitting.Result, plus bool) {
+	back := &a.back
 	back.SetOpticZoneRadiusMm(float64(r.Radii.Flat))
 	if r.Radii.Steep != r.Radii.Flat {
 		back.SetSteepRadiusMm(float64(r.Radii.Steep))
 		back.SetFlatMeridianDeg(float64(r.Radii.FlatMeridian))
 	}
 	back.SetOpticZoneDiameterMm(float64(r.ZoneDiameter))
-	material := &pb.Material{}
+	material := &a.material
 	material.SetRefractiveIndex(float64(r.Body.Index))
 	if was := given.GetMaterial(); was != nil {
 		if was.HasDk() {
@@ -87,7 +110,7 @@ func lensToOrder(given *pb.Lens, r *fitting.Result, form pb.CylinderForm) *pb.Le
 			material.SetName(was.GetName())
 		}
 	}
-	m := &pb.Lens{}
+	m := &a.lens
 	m.SetKind(pb.LensKind_LENS_KIND_RIGID)
 	m.SetToricity(wireToricity[r.Toricity])
 	m.SetBackSurface(back)
@@ -95,11 +118,11 @@ func lensToOrder(given *pb.Lens, r *fitting.Result, form pb.CylinderForm) *pb.Le
 	m.SetCentreThicknessMm(float64(r.Body.CentreThickness))
 	m.SetMaterial(material)
 	power := r.Power
-	if wantsPlus := form == pb.CylinderForm_CYLINDER_FORM_PLUS; wantsPlus == (power.Cylinder < 0) {
+	if plus == (power.Cylinder < 0) {
 		power = power.Transposed()
 	}
-	m.SetPower(sphereCylinderOf(power))
-	return m
+	setWritten(&a.power, power)
+	m.SetPower(&a.power)
 }
 
 var wireToricity = [...]pb.Toricity{
@@ -109,23 +132,24 @@ var wireToricity = [...]pb.Toricity{
 	fitting.Bitoric:    pb.Toricity_TORICITY_BITORIC,
 }
 
-func tearLens(r *fitting.Result, form pb.CylinderForm) *pb.TearLens {
-	m := &pb.TearLens{}
-	m.SetPower(sphereCylinder(r.TearLens.PowerVector, form))
-	m.SetPowerVector(powerVector(r.TearLens.PowerVector))
+func (a *fitAnswer) tearLens(r *fitting.Result, plus bool) {
+	setWritten(&a.tearPower, inForm(r.TearLens.PowerVector, plus))
+	setVector(&a.tearVector, r.TearLens.PowerVector)
+	m := &a.tears
+	m.SetPower(&a.tearPower)
+	m.SetPowerVector(&a.tearVector)
 	m.SetApexClearanceUm(float64(r.Layer.Apex.Micrometres()))
 	m.SetIndex(float64(r.Layer.Index))
-	return m
 }
 
-func residual(r *fitting.Result) *pb.Residual {
-	m := &pb.Residual{}
-	m.SetVector(powerVector(r.Over.Power))
+func (a *fitAnswer) setResidual(r *fitting.Result) {
+	setVector(&a.residualVector, r.Over.Power)
+	m := &a.residual
+	m.SetVector(&a.residualVector)
 	m.SetBlurStrengthD(float64(r.Blur))
 	m.SetAcuityLossLogmar(r.AcuityLog)
 	m.SetDecimalAcuity(r.Acuity)
 	m.SetAcuityModel(fitting.AcuityModel)
-	return m
 }
 
 func oxygen(given *pb.Material, r *fitting.Result) *pb.Oxygen {

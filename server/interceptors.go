@@ -14,15 +14,34 @@ import (
 	"google.golang.org/grpc/status"
 )
 
-// interceptors are what every unary call passes, the outermost first.
-func interceptors(log *slog.Logger) []grpc.UnaryServerInterceptor {
-	return []grpc.UnaryServerInterceptor{
-		echoRequestID,    // first, so that every answer and every failure carries the id
-		logCall(log),     // sees the final code of what is inside it
-		recoverCall(log), // inside the log, so that a panic is logged as the failure that the caller gets
-		refuseLate,       // nothing is computed for a caller who has gone
-		nameNotServed,    // next to the handler: gives its UNIMPLEMENTED a reason
+// interceptor is what every unary call passes, step by step. It is one function, and not a chain of many, so that a call costs no closure
+// a step.
+func interceptor(log *slog.Logger) grpc.UnaryServerInterceptor {
+	return func(ctx context.Context, req any, info *grpc.UnaryServerInfo, handler grpc.UnaryHandler) (any, error) {
+		begin := time.Now()
+		echoRequestID(ctx)                              // first, so that every answer and every failure carries the id
+		res, err := guard(ctx, log, req, info, handler) // nothing gets past it: lateness, a panic, a method that is not served
+		logCall(ctx, log, info.FullMethod, err, begin)  // last, since it tells the code that the caller gets
+		return res, err
 	}
+}
+
+// guard calls the handler unless the caller has gone, and turns a panic into INTERNAL, with the stack in the log. The value of the panic
+// is not logged: it can hold what was sent.
+func guard(ctx context.Context, log *slog.Logger, req any, info *grpc.UnaryServerInfo, handler grpc.UnaryHandler) (res any, err error) {
+	defer func() {
+		if p := recover(); p != nil {
+			logPanic(ctx, log, info.FullMethod)
+			res, err = nil, internal()
+		}
+	}()
+	if err := late(ctx); err != nil {
+		return nil, err
+	}
+	if res, err = handler(ctx, req); err != nil && status.Code(err) == codes.Unimplemented {
+		return nil, notServed(info.FullMethod)
+	}
+	return res, err
 }
 
 // requestIDKey is the metadata key by which a caller correlates.
@@ -43,38 +62,32 @@ func requestID(ctx context.Context) string {
 }
 
 // echoRequestID sends the caller's request id back in the header.
-func echoRequestID(ctx context.Context, req any, _ *grpc.UnaryServerInfo, handler grpc.UnaryHandler) (any, error) {
+func echoRequestID(ctx context.Context) {
 	if id := requestID(ctx); id != "" {
 		// It fails only where there is no call to answer.
 		_ = grpc.SetHeader(ctx, metadata.Pairs(requestIDKey, id))
 	}
-	return handler(ctx, req)
 }
 
 // logCall logs method, code, reason, duration and request id, and nothing else: the text of an error can hold what was
 // sent. Successes are logged at debug, the mistakes of callers at info, ours at error.
-func logCall(log *slog.Logger) grpc.UnaryServerInterceptor {
-	return func(ctx context.Context, req any, info *grpc.UnaryServerInfo, handler grpc.UnaryHandler) (any, error) {
-		begin := time.Now()
-		res, err := handler(ctx, req)
-		code := status.Code(err)
-		level := slog.LevelInfo
-		switch code {
-		case codes.OK:
-			level = slog.LevelDebug
-		case codes.Internal:
-			level = slog.LevelError
-		}
-		if log.Enabled(ctx, level) {
-			log.LogAttrs(ctx, level, "call",
-				slog.String("method", info.FullMethod),
-				slog.String("code", code.String()),
-				slog.String("reason", reasonOf(err)),
-				slog.Duration("duration", time.Since(begin)),
-				slog.String("request_id", requestID(ctx)))
-		}
-		return res, err
+func logCall(ctx context.Context, log *slog.Logger, method string, err error, begin time.Time) {
+	code, level := status.Code(err), slog.LevelInfo
+	switch code {
+	case codes.OK:
+		level = slog.LevelDebug
+	case codes.Internal:
+		level = slog.LevelError
 	}
+	if !log.Enabled(ctx, level) {
+		return
+	}
+	log.LogAttrs(ctx, level, "call",
+		slog.String("method", method),
+		slog.String("code", code.String()),
+		slog.String("reason", reasonOf(err)),
+		slog.Duration("duration", time.Since(begin)),
+		slog.String("request_id", requestID(ctx)))
 }
 
 // reasonOf is the reason in the ErrorInfo of a status, or empty.
@@ -87,25 +100,11 @@ func reasonOf(err error) string {
 	return ""
 }
 
-// recoverCall turns a panic into INTERNAL, with the stack in the log. It builds the whole status itself. The value of the
-// panic is not logged but for its type: it can hold what was sent.
-func recoverCall(log *slog.Logger) grpc.UnaryServerInterceptor {
-	return func(ctx context.Context, req any, info *grpc.UnaryServerInfo, handler grpc.UnaryHandler) (res any, err error) {
-		defer func() {
-			if p := recover(); p != nil {
-				logPanic(ctx, log, info.FullMethod)
-				res, err = nil, internal()
-			}
-		}()
-		return handler(ctx, req)
-	}
-}
-
 func logPanic(ctx context.Context, log *slog.Logger, method string) {
 	log.LogAttrs(ctx, slog.LevelError, "panic", slog.String("method", method), slog.String("stack", string(debug.Stack())))
 }
 
-// streamRecover is recoverCall for streams.
+// streamRecover is guard for streams: a panic becomes INTERNAL.
 func streamRecover(log *slog.Logger) grpc.StreamServerInterceptor {
 	return func(srv any, ss grpc.ServerStream, info *grpc.StreamServerInfo, handler grpc.StreamHandler) (err error) {
 		defer func() {
@@ -118,27 +117,18 @@ func streamRecover(log *slog.Logger) grpc.StreamServerInterceptor {
 	}
 }
 
-// refuseLate answers at once where the caller has gone or the deadline has passed.
-func refuseLate(ctx context.Context, req any, _ *grpc.UnaryServerInfo, handler grpc.UnaryHandler) (any, error) {
+// late is the error of a call whose caller has gone or whose deadline has passed.
+func late(ctx context.Context) error {
 	switch err := ctx.Err(); {
 	case errors.Is(err, context.DeadlineExceeded):
-		return nil, failure(codes.DeadlineExceeded, reasonDeadline, "the deadline passed before the call was begun")
+		return failure(codes.DeadlineExceeded, reasonDeadline, "the deadline passed before the call was begun")
 	case err != nil:
-		return nil, failure(codes.Canceled, reasonCancelled, "the call was cancelled before it was begun")
+		return failure(codes.Canceled, reasonCancelled, "the call was cancelled before it was begun")
 	}
-	return handler(ctx, req)
+	return nil
 }
 
-// nameNotServed gives the UNIMPLEMENTED of a method that is in the schema and not served its reason.
-func nameNotServed(ctx context.Context, req any, info *grpc.UnaryServerInfo, handler grpc.UnaryHandler) (any, error) {
-	res, err := handler(ctx, req)
-	if err != nil && status.Code(err) == codes.Unimplemented {
-		return nil, notServed(info.FullMethod)
-	}
-	return res, err
-}
-
-// streamNotServed is nameNotServed for streams.
+// streamNotServed gives the UNIMPLEMENTED of a stream that is not served its reason.
 func streamNotServed(srv any, ss grpc.ServerStream, info *grpc.StreamServerInfo, handler grpc.StreamHandler) error {
 	err := handler(srv, ss)
 	if err != nil && status.Code(err) == codes.Unimplemented {

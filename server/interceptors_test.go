@@ -83,7 +83,7 @@ func TestTheLogHoldsNoClinicalValue(t *testing.T) {
 func TestAPanicIsNobodyElsesProblem(t *testing.T) {
 	t.Parallel()
 	var log bytes.Buffer
-	chain := chained(interceptors(slog.New(slog.NewTextHandler(&log, nil))))
+	chain := interceptor(slog.New(slog.NewTextHandler(&log, nil)))
 	info := &grpc.UnaryServerInfo{FullMethod: "/x/Y"}
 	_, err := chain(context.Background(), nil, info, func(context.Context, any) (any, error) { panic("secret 7.654321") })
 	code, reason, _ := details(t, err)

@@ -1,7 +1,6 @@
 package server
 
 import (
-	"runtime"
 	"time"
 
 	"google.golang.org/grpc/keepalive"
@@ -19,5 +18,6 @@ var (
 	}
 )
 
-// streamWorkers is the number of goroutines that wait for calls.
-var streamWorkers = uint32(4 * runtime.GOMAXPROCS(0))
+// streamWorkers is the number of goroutines that wait for calls: with fewer than there are calls in flight, each further call begins in a new
+// goroutine, whose stack has to grow.
+const streamWorkers = 128

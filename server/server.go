@@ -37,7 +37,7 @@ type Server struct {
 	services []service
 	methods  map[string]method
 	health   *health.Server
-	chain    []grpc.UnaryServerInterceptor
+	around   grpc.UnaryServerInterceptor
 }
 
 // service is a description and what implements it.
@@ -79,7 +79,7 @@ func New(o Options) *Server {
 		}
 		s.health.SetServingStatus(sv.desc.ServiceName, healthpb.HealthCheckResponse_SERVING)
 	}
-	s.chain = interceptors(o.Log)
+	s.around = interceptor(o.Log)
 	return s
 }
 
@@ -107,7 +107,7 @@ func requests() []protoreflect.MessageDescriptor {
 func (s *Server) GRPC(more ...grpc.ServerOption) *grpc.Server {
 	options := append([]grpc.ServerOption{
 		grpc.MaxRecvMsgSize(s.options.MaxMessageBytes),
-		grpc.ChainUnaryInterceptor(s.chain...),
+		grpc.UnaryInterceptor(s.around),
 		grpc.ChainStreamInterceptor(streamRecover(s.options.Log), streamNotServed),
 		grpc.KeepaliveEnforcementPolicy(enforcement),
 		grpc.KeepaliveParams(keepaliveParameters),
@@ -144,25 +144,14 @@ func (s *Server) Stop(g *grpc.Server, grace time.Duration) {
 	}
 }
 
-// Call answers one unary rpc in the process, through the same interceptors and handler as a call over the network.
+// Call answers one unary rpc in the process, through the same interceptor and handler as a call over the network.
 // fullMethod is as on the wire ("/meniscus.v1.FittingService/Fit"). read fills the request message that it is given.
 func (s *Server) Call(ctx context.Context, fullMethod string, read func(any) error) (any, error) {
 	m, ok := s.methods[fullMethod]
 	if !ok {
 		return nil, notServed(fullMethod)
 	}
-	return m.desc.Handler(m.impl, ctx, read, chained(s.chain))
-}
-
-// chained makes one interceptor of many, the first outermost.
-func chained(chain []grpc.UnaryServerInterceptor) grpc.UnaryServerInterceptor {
-	return func(ctx context.Context, req any, info *grpc.UnaryServerInfo, handler grpc.UnaryHandler) (any, error) {
-		for _, next := range slices.Backward(chain) {
-			inner := handler
-			handler = func(ctx context.Context, req any) (any, error) { return next(ctx, req, info, inner) }
-		}
-		return handler(ctx, req)
-	}
+	return m.desc.Handler(m.impl, ctx, read, s.around)
 }
 
 // Methods are the full names of the unary methods in the schema, sorted.
