@@ -76,9 +76,9 @@ func formatReading(m *pb.MeridianReading, decimals int) string {
 	text := "no reading"
 	switch m.WhichReading() {
 	case pb.MeridianReading_RadiusMm_case:
-		text = digits(m.GetRadiusMm(), decimals) + " mm"
+		text = Decimal(m.GetRadiusMm(), decimals) + " mm"
 	case pb.MeridianReading_PowerD_case:
-		text = digits(m.GetPowerD(), decimals) + " D"
+		text = Decimal(m.GetPowerD(), decimals) + " D"
 	}
 	if m.HasAuxiliaryLensD() {
 		text += " (auxiliary lens " + Signed(m.GetAuxiliaryLensD(), 2) + " D)"
@@ -105,7 +105,7 @@ func Axis(deg float64) string {
 
 // Signed writes a number with its sign and the given number of decimals, or Exact. Zero has no sign.
 func Signed(x float64, decimals int) string {
-	text := digits(x, decimals)
+	text := Decimal(x, decimals)
 	if Round(x, decimals) > 0 {
 		return "+" + text
 	}
@@ -123,8 +123,8 @@ func Round(x float64, decimals int) float64 {
 	return math.Round(x*scale)/scale + 0
 }
 
-// digits writes a number rounded, or exact and with two decimals at least.
-func digits(x float64, decimals int) string {
+// Decimal writes a number with the given number of decimals, or Exact. Only a minus is written; zero has none.
+func Decimal(x float64, decimals int) string {
 	text := strconv.FormatFloat(Round(x, decimals), 'f', decimals, 64)
 	if decimals != Exact {
 		return text

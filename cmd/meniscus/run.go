@@ -5,15 +5,11 @@ import (
 	"errors"
 	"fmt"
 	"io"
-	"net"
-	"net/netip"
+	"strings"
 	"time"
 
 	"github.com/spf13/cobra"
 	"google.golang.org/grpc"
-	"google.golang.org/grpc/credentials"
-	"google.golang.org/grpc/credentials/insecure"
-	"google.golang.org/grpc/status"
 
 	"meniscus.example/client/embedded"
 	"meniscus.example/server"
@@ -30,104 +26,85 @@ const safety = `A calculated starting point, to be confirmed on the eye by a lic
 practitioner under local rules. It diagnoses nothing and stores nothing about a
 patient.`
 
+// notationHelp says how prescriptions and readings are written.
+const notationHelp = `A prescription is written "-4.25 / -1.50 x 175", "plano / -0.75 x 90" or
+"+2.00 DS", with ", vertex 12" after it if you like; a power without a sign is
+plus. Readings are radii in mm or powers in D with their meridians, in either
+order: "7.80 @ 180 / 7.60 @ 90" or "43.25 @ 180 / 44.50 @ 90". Put each between
+quotes.`
+
 // app is what every command needs.
 type app struct {
 	in       io.Reader
 	out      io.Writer
+	errOut   io.Writer
 	server   string
 	openText bool
 	timeout  time.Duration
 	json     bool
+	// engine makes the connection that is used without a server.
+	engine func() grpc.ClientConnInterface
 }
-
-// usageError is a mistake on the command line.
-type usageError struct{ error }
-
-func usage(format string, args ...any) error { return usageError{fmt.Errorf(format, args...)} }
 
 // run is the whole program; it gives the exit code.
 func run(ctx context.Context, args []string, stdin io.Reader, stdout, stderr io.Writer) int {
-	a := &app{in: stdin, out: stdout}
-	root := a.root()
-	root.SetArgs(asPositional(args))
-	root.SetIn(stdin)
-	root.SetOut(stdout)
-	root.SetErr(stderr)
-	err := root.ExecuteContext(ctx)
-	var wrong usageError
-	switch _, fromService := status.FromError(err); {
-	case err == nil:
-		return exitFine
-	case errors.As(err, &wrong) || !fromService:
-		fmt.Fprintf(stderr, "meniscus: %v\n", err)
-		fmt.Fprintln(stderr, "meniscus COMMAND --help shows worked examples.")
-		return exitUsage
+	a := &app{
+		in: stdin, out: stdout, errOut: stderr,
+		engine: func() grpc.ClientConnInterface { return embedded.New(server.Options{}) },
 	}
-	a.printError(stderr, err)
-	return exitFailed
+	return a.run(ctx, args)
 }
 
-// asPositional gives an argument that begins like a negative number a leading space, so that it is not taken for a flag: a
-// prescription may stand where it likes. What reads it passes the space.
-func asPositional(args []string) []string {
-	out := make([]string, len(args))
-	for i, arg := range args {
-		if len(arg) > 1 && arg[0] == '-' && (arg[1] >= '0' && arg[1] <= '9' || arg[1] == '.') {
-			arg = " " + arg
-		}
-		out[i] = arg
+func (a *app) run(ctx context.Context, args []string) int {
+	root := a.root()
+	root.SetArgs(shielded(args))
+	root.SetIn(a.in)
+	root.SetOut(a.out)
+	root.SetErr(a.errOut)
+	err := root.ExecuteContext(ctx)
+	var refused *refusal
+	var unwritten outputError
+	switch {
+	case err == nil:
+		return exitFine
+	case errors.As(err, &refused):
+		a.printRefusal(refused)
+		return exitFailed
+	case errors.As(err, &unwritten):
+		fmt.Fprintf(a.errOut, "meniscus: %v\n", err)
+		return exitFailed
 	}
-	return out
+	for line := range strings.Lines(err.Error()) {
+		fmt.Fprintf(a.errOut, "meniscus: %s\n", strings.TrimSuffix(line, "\n"))
+	}
+	fmt.Fprintln(a.errOut, "meniscus COMMAND --help shows worked examples.")
+	return exitUsage
 }
 
 func (a *app) root() *cobra.Command {
 	root := &cobra.Command{
 		Use:   "meniscus",
 		Short: "Calculate contact lens fits",
-		Long: "meniscus calculates contact lens fits: from a spectacle refraction and keratometer\n" +
-			"readings to the lens to order, with the derivation and what to be careful of.\n" +
-			"Without --server it computes by itself; nothing leaves this machine.\n\n" + safety,
-		Version:       server.VersionText(),
-		SilenceErrors: true,
-		SilenceUsage:  true,
+		Long: "meniscus calculates contact lens fits: from a spectacle refraction and\n" +
+			"keratometer readings to the lens to order, with the derivation and what to be\n" +
+			"careful of. Without --server it computes by itself: nothing leaves this machine.\n\n" + safety,
+		Example: `  meniscus fit --rx "-4.25 / -1.50 x 175, vertex 12" \
+    --k "7.80 @ 180 / 7.60 @ 90" --eye right
+  # Lens to order, right eye (OD)`,
+		Version:           server.VersionText(),
+		SilenceErrors:     true,
+		SilenceUsage:      true,
+		PersistentPreRunE: func(*cobra.Command, []string) error { return a.checkConnection() },
 	}
 	root.SetVersionTemplate("meniscus {{.Version}}\n")
+	root.SetUsageFunc(printUsage)
 	root.CompletionOptions.HiddenDefaultCmd = true
-	root.SetFlagErrorFunc(func(_ *cobra.Command, err error) error { return usageError{err} })
 	flags := root.PersistentFlags()
-	flags.StringVar(&a.server, "server", "", "ask the server at `HOST:PORT` instead of computing here")
+	flags.SortFlags = false
+	flags.BoolVar(&a.json, "json", false, "print the exact answer, or the error, as JSON")
+	flags.StringVar(&a.server, "server", "", "ask the server at `HOST:PORT` instead of computing here; encrypted, unless it is on this machine")
 	flags.BoolVar(&a.openText, "plaintext", false, "call a server on another machine without encryption")
-	flags.DurationVar(&a.timeout, "timeout", 10*time.Second, "give up after this long")
-	flags.BoolVar(&a.json, "json", false, "print the exact answer as JSON")
+	flags.DurationVar(&a.timeout, "timeout", 10*time.Second, "give up after this `TIME` (10s unless given)")
 	root.AddCommand(a.fit(), a.vertex(), a.combine(), a.express(), a.cornea(), a.cautions(), a.methods())
 	return root
-}
-
-// call calls one rpc through a connection to the server that was named, or to the engine in this process.
-func (a *app) call(ctx context.Context, do func(context.Context, grpc.ClientConnInterface) error) error {
-	ctx, cancel := context.WithTimeout(ctx, a.timeout)
-	defer cancel()
-	if a.server == "" {
-		return do(ctx, embedded.New(server.Options{}))
-	}
-	secure := credentials.NewTLS(nil)
-	if a.openText || loopback(a.server) {
-		secure = insecure.NewCredentials()
-	}
-	conn, err := grpc.NewClient(a.server, grpc.WithTransportCredentials(secure))
-	if err != nil {
-		return usage("--server %s: %w", a.server, err)
-	}
-	defer conn.Close()
-	return do(ctx, conn)
-}
-
-// loopback reports whether an address is on this machine.
-func loopback(address string) bool {
-	host, _, err := net.SplitHostPort(address)
-	if err != nil {
-		return false
-	}
-	ip, err := netip.ParseAddr(host)
-	return host == "localhost" || err == nil && ip.IsLoopback()
 }
