@@ -19,6 +19,7 @@ type fittingService struct {
 // work is what a fit needs while it runs: kept off the stack, which would have to grow for it in every new goroutine. It is wiped
 // when the fit is done.
 type work struct {
+	input  fitting.Input
 	fit    fitting.Case
 	result fitting.Result
 }
@@ -34,7 +35,7 @@ func (w *work) done() {
 func (s fittingService) Fit(_ context.Context, req *pb.FitRequest) (*pb.FitResponse, error) {
 	w := scratch.Get().(*work)
 	defer w.done()
-	if err := fitCase(&w.fit, s.door, req); err != nil {
+	if err := w.parse(s.door, req); err != nil {
 		return nil, err
 	}
 	if err := w.fit.Fit(&w.result); err != nil {
@@ -168,16 +169,15 @@ func fitChoices(r *fitting.Result) []*pb.Choice {
 	for i, c := range list {
 		out[i] = fixedChoices[c]
 		if c == fitting.ChoiceOfToricity() {
-			out[i] = choice(c)
-			out[i].SetRule(c.Rule + compared(r.Compared()))
+			out[i] = choice(&fitting.Choice{Field: c.Field, Rule: compared(c.Rule, r.Compared()), Source: c.Source})
 		}
 	}
 	return out
 }
 
-// compared says what was compared.
-func compared(list []fitting.Candidate) string {
-	text := make([]byte, 0, 200)
+// compared is the rule, and what was compared.
+func compared(rule string, list []fitting.Candidate) string {
+	text := append(make([]byte, 0, 512), rule...)
 	text = append(text, "; astigmatism compared:"...)
 	for i, c := range list {
 		if i > 0 {

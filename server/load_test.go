@@ -3,6 +3,7 @@ package server
 import (
 	"context"
 	"net"
+	"runtime/debug"
 	"slices"
 	"sync"
 	"syscall"
@@ -37,9 +38,10 @@ func BenchmarkHandler(b *testing.B) {
 
 // BenchmarkUnaryFit compares the server with a bare one that answers with a prepared message of the same content, over
 // loopback, with 64 calls in flight on two connections. The two take turns in short slices, so that a machine whose speed
-// drifts does it to both; the ratio is the median of the slices' ratios; cpu-ratio is the same of the
+// drifts does it to both; both in one process with GCPercent. The ratio is the median of the slices' ratios; cpu-ratio is the same of the
 // processor time a call, client included, which other work on the machine disturbs less.
 func BenchmarkUnaryFit(b *testing.B) {
+	defer debug.SetGCPercent(debug.SetGCPercent(GCPercent))
 	req := benchmarkFitRequest()
 	response, err := call(req)
 	if err != nil {

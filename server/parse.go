@@ -81,9 +81,9 @@ var toricities = map[pb.Toricity]fitting.Toricity{
 	pb.Toricity_TORICITY_BITORIC:   fitting.Bitoric,
 }
 
-// fitCase parses a FitRequest into c. What is missing, or is in the schema and not offered by this version, is a fault; nothing that
+// parse reads a FitRequest into the input and the case. What is missing, or is in the schema and not offered by this version, is a fault; nothing that
 // was sent is passed over in silence.
-func fitCase(c *fitting.Case, d *door, req *pb.FitRequest) error {
+func (w *work) parse(d *door, req *pb.FitRequest) error {
 	var v violations
 	d.check(&v, req)
 	eye, lens, plan := req.GetEye(), req.GetLens(), req.GetPlan()
@@ -100,7 +100,8 @@ func fitCase(c *fitting.Case, d *door, req *pb.FitRequest) error {
 	}
 	notOffered(&v, req)
 	back, material := lens.GetBackSurface(), lens.GetMaterial()
-	in := fitting.Input{
+	in := &w.input
+	*in = fitting.Input{
 		Refraction:  prescription(eye.GetRefraction()),
 		Vertex:      vertexDistance(eye.GetRefraction()),
 		Keratometry: readings(eye.GetKeratometry()),
@@ -131,9 +132,7 @@ func fitCase(c *fitting.Case, d *door, req *pb.FitRequest) error {
 	if lens.HasPower() {
 		in.Lens.Power = unit.Some(prescription(lens.GetPower()))
 	}
-	fit, faults := fitting.NewCase(in)
-	v.merge(faults)
-	*c = fit
+	v.merge(w.fit.Parse(in))
 	return v.err()
 }
 
@@ -146,12 +145,16 @@ func notOffered(v *violations, req *pb.FitRequest) {
 	}
 	lens, plan := req.GetLens(), req.GetPlan()
 	back := lens.GetBackSurface()
-	kind := lens.GetKind()
-	no(kind != pb.LensKind_LENS_KIND_UNSPECIFIED && kind != pb.LensKind_LENS_KIND_RIGID,
-		"lens.kind", "is "+kind.String()+"; this version fits LENS_KIND_RIGID only")
-	rule := plan.GetBackCurveRule()
-	no(rule != pb.BackCurveRule_BACK_CURVE_RULE_UNSPECIFIED && rule != pb.BackCurveRule_BACK_CURVE_RULE_OFFSET,
-		"plan.back_curve_rule", "is "+rule.String()+"; this version has BACK_CURVE_RULE_OFFSET only")
+	switch kind := lens.GetKind(); kind {
+	case pb.LensKind_LENS_KIND_UNSPECIFIED, pb.LensKind_LENS_KIND_RIGID:
+	default:
+		no(true, "lens.kind", "is "+kind.String()+"; this version fits LENS_KIND_RIGID only")
+	}
+	switch rule := plan.GetBackCurveRule(); rule {
+	case pb.BackCurveRule_BACK_CURVE_RULE_UNSPECIFIED, pb.BackCurveRule_BACK_CURVE_RULE_OFFSET:
+	default:
+		no(true, "plan.back_curve_rule", "is "+rule.String()+"; this version has BACK_CURVE_RULE_OFFSET only")
+	}
 	no(plan.HasWantedApexClearanceUm(), "plan.wanted_apex_clearance_um",
 		"goes with BACK_CURVE_RULE_CLEARANCE, which this version does not have; apex_clearance_um is the thickness of the tears that is known")
 	no(plan.HasUncertainties(), "plan.uncertainties", "is not used by this version; leave it out")

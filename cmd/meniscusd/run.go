@@ -8,6 +8,7 @@ import (
 	"log/slog"
 	"net"
 	"net/netip"
+	"runtime/debug"
 	"strings"
 	"time"
 
@@ -55,6 +56,9 @@ func run(ctx context.Context, args []string, env func(string) (string, bool), st
 		return exitUsage
 	case done:
 		return exitFine
+	}
+	if _, set := env("GOGC"); !set {
+		defer debug.SetGCPercent(debug.SetGCPercent(server.GCPercent))
 	}
 	log := slog.New(slog.NewJSONHandler(stderr, &slog.HandlerOptions{Level: s.logLevel}))
 	if err := serve(ctx, s, log); err != nil {

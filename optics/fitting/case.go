@@ -63,7 +63,7 @@ type Input struct {
 	Plan        Plan
 }
 
-// Case is an Input that makes sense. Only NewCase makes one.
+// Case is an Input that makes sense. Only NewCase and Parse make one.
 type Case struct {
 	refraction  vergence.SpectacleRefraction
 	cornea      cornea.Cornea
@@ -95,11 +95,20 @@ const (
 // Source: common practice (it must be smaller than the visible iris, of which 15 mm is beyond any, less the movement).
 const WidestRigid unit.Millimetre = 13
 
-// NewCase checks an input. It returns every fault, each a *unit.FieldError with a path in the words of the schema that begins
-// at eye, lens or plan.
+// NewCase checks an input: Parse of a new case.
 //
 // Source: definition.
 func NewCase(in Input) (Case, []error) {
+	var c Case
+	faults := c.Parse(&in)
+	return c, faults
+}
+
+// Parse checks an input, and makes c the case of it, whatever c was. It returns every fault, each a *unit.FieldError with a path in the words of the schema that begins
+// at eye, lens or plan.
+//
+// Source: definition.
+func (c *Case) Parse(in *Input) []error {
 	var faults []error
 	fault := func(field, problem, looksLike string) {
 		faults = append(faults, &unit.FieldError{Field: field, Problem: problem, LooksLike: looksLike})
@@ -109,7 +118,7 @@ func NewCase(in Input) (Case, []error) {
 			faults = append(faults, unit.Within(prefix, err))
 		}
 	}
-	c := Case{
+	*c = Case{
 		lens:     in.Lens,
 		iris:     in.Iris,
 		pupil:    in.Pupil,
@@ -195,9 +204,9 @@ func NewCase(in Input) (Case, []error) {
 		c.kept = unit.Some(sc)
 	}
 	if faults != nil {
-		return Case{}, faults
+		*c = Case{}
 	}
-	return c, nil
+	return faults
 }
 
 // positive reports a number that is there and is not above 0 and finite.

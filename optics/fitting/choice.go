@@ -67,7 +67,7 @@ var (
 	choiceThickness = Choice{
 		"lens.centre_thickness_mm",
 		"by power: 0.18 mm at 0.00 D, 0.01 mm less a dioptre of minus down to 0.12 mm, 0.03 mm more a dioptre of plus; " +
-			"0.02 mm more a dioptre of corneal astigmatism",
+			"0.02 mm more a dioptre of corneal astigmatism; 1 mm at the most",
 		"common practice, from memory",
 	}
 	choiceIndex = Choice{

@@ -98,7 +98,7 @@ func TestUsualThickness(t *testing.T) {
 	for _, c := range []struct {
 		power, astigmatism unit.Dioptre
 		want               unit.Millimetre
-	}{{0, 0, 0.18}, {-3, 0, 0.15}, {-6, 0, 0.12}, {-20, 0, 0.12}, {5, 0, 0.33}, {-3, 1, 0.17}, {-0.5, 2, 0.22}} {
+	}{{0, 0, 0.18}, {-3, 0, 0.15}, {-6, 0, 0.12}, {-20, 0, 0.12}, {5, 0, 0.33}, {-3, 1, 0.17}, {-0.5, 2, 0.22}, {30, 0, 1}, {40, 20, 1}} {
 		if got := lens.UsualCentreThickness(c.power, c.astigmatism); !within(float64(got), float64(c.want), 0.0051) {
 			t.Errorf("%v, %v: %v, want %v", c.power, c.astigmatism, got, c.want)
 		}

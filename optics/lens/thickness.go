@@ -9,10 +9,11 @@ import (
 // The rule of thumb for the centre thickness of a rigid lens.
 //
 // Source: common practice, from memory: 0.18 mm without power, 0.01 mm less a dioptre of minus down to 0.12 mm,
-// 0.03 mm more a dioptre of plus, and 0.02 mm more a dioptre of corneal astigmatism against flexure.
+// 0.03 mm more a dioptre of plus, 0.02 mm more a dioptre of corneal astigmatism against flexure, and 1 mm at the most.
 const (
 	planoThickness     unit.Millimetre = 0.18
 	leastThickness     unit.Millimetre = 0.12
+	greatestThickness  unit.Millimetre = 1
 	lessPerMinus                       = 0.01
 	morePerPlus                        = 0.03
 	morePerAstigmatism                 = 0.02
@@ -30,5 +31,5 @@ func UsualCentreThickness(power, astigmatism unit.Dioptre) unit.Millimetre {
 		t += unit.Millimetre(morePerPlus * float64(power))
 	}
 	t += unit.Millimetre(morePerAstigmatism * float64(astigmatism))
-	return unit.Millimetre(math.Round(float64(t)*100) / 100)
+	return min(greatestThickness, unit.Millimetre(math.Round(float64(t)*100)/100))
 }

@@ -21,3 +21,7 @@ var (
 // streamWorkers is the number of goroutines that wait for calls: with fewer than there are calls in flight, each further call begins in a new
 // goroutine, whose stack has to grow.
 const streamWorkers = 128
+
+// GCPercent is the garbage collector's target that a server is meant to run with: a fit leaves little behind and the live heap is a few MiB,
+// so that collecting at the usual 100 would be most of the cost of many calls. The program that serves sets it.
+const GCPercent = 400
