@@ -57,14 +57,14 @@ func TestTheProcessAnswersAsTheWireDoes(t *testing.T) {
 	lens.SetLens(pb.Lens_builder{Power: pb.SphereCylinder_builder{SphereD: proto.Float64(60)}.Build()}.Build())
 	for name, req := range map[string]*pb.FitRequest{"an answer": eye(-3), "bad input": eye(-300), "nothing": {}, "impossible": lens} {
 		before := proto.CloneOf(req)
-		call := func(conn grpc.ClientConnInterface) (*pb.FitResponse, error, metadata.MD) {
+		call := func(conn grpc.ClientConnInterface) (*pb.FitResponse, metadata.MD, error) {
 			var header metadata.MD
 			ctx := metadata.AppendToOutgoingContext(context.Background(), "x-request-id", "same")
 			res, err := pb.NewFittingServiceClient(conn).Fit(ctx, req, grpc.Header(&header))
-			return res, err, header
+			return res, header, err
 		}
-		a, errA, headerA := call(embedded.New(server.Options{}))
-		b, errB, headerB := call(wire)
+		a, headerA, errA := call(embedded.New(server.Options{}))
+		b, headerB, errB := call(wire)
 		if !proto.Equal(a, b) || !proto.Equal(status.Convert(errA).Proto(), status.Convert(errB).Proto()) {
 			t.Errorf("%s: in the process %v, %v; on the wire %v, %v", name, a, errA, b, errB)
 		}

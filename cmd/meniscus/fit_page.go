@@ -31,51 +31,47 @@ func (p *page) lens(res *pb.FitResponse) {
 			[]string{"back optic zone radius, flat", curve(back.GetOpticZoneRadiusMm()), along(flat)},
 			[]string{"back optic zone radius, steep", curve(back.GetSteepRadiusMm()), along(perpendicular(flat))})
 	} else {
-		rows = append(rows, []string{"back optic zone radius", curve(back.GetOpticZoneRadiusMm())})
+		rows = append(rows, row(back.HasOpticZoneRadiusMm(), "back optic zone radius", curve(back.GetOpticZoneRadiusMm())))
 	}
 	rows = append(rows,
-		[]string{"back vertex power", order(lens.GetPower())},
-		[]string{"  required exactly", power(res.GetRequiredPower(), 3)},
-		[]string{"back optic zone diameter", mm(back.GetOpticZoneDiameterMm(), 1)},
-		[]string{"total diameter", mm(lens.GetTotalDiameterMm(), 1)},
-		[]string{"centre thickness", mm(lens.GetCentreThicknessMm(), 2)})
+		row(lens.HasPower(), "back vertex power", order(lens.GetPower())),
+		row(res.HasRequiredPower(), "  required exactly", power(res.GetRequiredPower(), 3)),
+		row(back.HasOpticZoneDiameterMm(), "back optic zone diameter", mm(back.GetOpticZoneDiameterMm(), 1)),
+		row(lens.HasTotalDiameterMm(), "total diameter", mm(lens.GetTotalDiameterMm(), 1)),
+		row(lens.HasCentreThicknessMm(), "centre thickness", mm(lens.GetCentreThicknessMm(), 2)))
 	p.table(append(rows, material(lens.GetMaterial())...)...)
 }
 
 // material is the rows of a material.
 func material(m *pb.Material) [][]string {
-	text := fmt.Sprintf("index %v", notation.Round(m.GetRefractiveIndex(), 4))
+	text := "index " + upTo(4, m.GetRefractiveIndex())
 	if m.HasName() {
 		text = m.GetName() + ", " + text
 	}
-	rows := [][]string{{"material", text}}
-	if m.HasDk() {
-		rows = append(rows, []string{"oxygen permeability Dk", notation.Decimal(m.GetDk(), 0) + " × " + symbol("10*-11.cm2/s/mm[Hg]")})
+	return [][]string{
+		row(m.HasRefractiveIndex(), "material", text),
+		row(m.HasDk(), "oxygen permeability Dk", upTo(1, m.GetDk())+" × "+symbol("10*-11.cm2/s/mm[Hg]")),
 	}
-	return rows
 }
 
 // reasons lays out why it is this lens.
 func (p *page) reasons(eye *pb.Eye, res *pb.FitResponse) {
 	p.title("Why")
 	tears, over, left := res.GetTearLens(), res.GetOverRefraction(), res.GetResidual()
-	rows := [][]string{
+	p.table(
 		given(eye.GetRefraction()),
-		{"readings given", readings(eye.GetKeratometry())},
-		{"refraction at the cornea", power(res.GetOcularRefraction(), 3)},
-		{"tear lens", power(tears.GetPower(), 3)},
-		{"  of tears", fmt.Sprintf("index %v, %s µm thick at the apex", notation.Round(tears.GetIndex(), 4), notation.Decimal(tears.GetApexClearanceUm(), 0))},
-		{"back vertex power required", power(res.GetRequiredPower(), 3)},
-		{"over-refraction predicted", power(over, 2), distance(over.GetVertexDistanceMm())},
-		{"residual blur", notation.Decimal(left.GetBlurStrengthD(), 2) + " D"},
-		{"acuity predicted", fmt.Sprintf("%s decimal of 1.00, %s logMAR lost",
-			notation.Decimal(left.GetDecimalAcuity(), 2), notation.Decimal(left.GetAcuityLossLogmar(), 2))},
-	}
-	if res.HasOxygen() {
-		rows = append(rows, []string{"oxygen, Dk/t at the centre",
-			notation.Decimal(res.GetOxygen().GetDkTCentre(), 1) + " × " + symbol("10*-9.cm/s/mm[Hg]")})
-	}
-	p.table(rows...)
+		[]string{"readings given", readings(eye.GetKeratometry())},
+		row(res.HasOcularRefraction(), "refraction at the cornea", power(res.GetOcularRefraction(), 3)),
+		row(tears.HasPower(), "tear lens", power(tears.GetPower(), 3)),
+		row(tears.HasIndex(), "  of tears", fmt.Sprintf("index %s, %s µm thick at the apex",
+			upTo(4, tears.GetIndex()), upTo(1, tears.GetApexClearanceUm()))),
+		row(res.HasRequiredPower(), "back vertex power required", power(res.GetRequiredPower(), 3)),
+		row(res.HasOverRefraction(), "over-refraction predicted", power(over, 2), distance(over.GetVertexDistanceMm())),
+		row(left.HasBlurStrengthD(), "residual blur", notation.Decimal(left.GetBlurStrengthD(), 2)+" D"),
+		row(left.HasDecimalAcuity(), "acuity predicted", fmt.Sprintf("%s decimal of 1.00, %s logMAR lost",
+			notation.Decimal(left.GetDecimalAcuity(), 2), notation.Decimal(left.GetAcuityLossLogmar(), 2))),
+		row(res.HasOxygen(), "oxygen, Dk/t at the centre",
+			upTo(1, res.GetOxygen().GetDkTCentre())+" × "+symbol("10*-9.cm/s/mm[Hg]")))
 	if model := left.GetAcuityModel(); p.sources && model != "" {
 		p.item("acuity: " + model)
 	}

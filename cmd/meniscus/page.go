@@ -31,11 +31,19 @@ func (p *page) title(text string) {
 	p.buffer.WriteString(text + "\n")
 }
 
-// table lays out rows of cells in columns. A row without a second cell is left out.
+// row is a row of a table, or nothing where there is nothing to show.
+func row(has bool, cells ...string) []string {
+	if !has {
+		return nil
+	}
+	return cells
+}
+
+// table lays out rows of cells in columns. Empty rows are left out.
 func (p *page) table(rows ...[]string) {
 	w := tabwriter.NewWriter(&p.buffer, 0, 0, 2, ' ', 0)
 	for _, row := range rows {
-		if len(row) > 1 {
+		if len(row) > 0 {
 			fmt.Fprintln(w, "  "+strings.Join(row, "\t"))
 		}
 	}
@@ -46,7 +54,7 @@ func (p *page) table(rows ...[]string) {
 func (p *page) item(text string) { p.wrap("  ", "    ", text) }
 
 // wrap writes a text in lines that end within the width, the first after one indent, the others after another. A line is not
-// broken at a no-break space.
+// broken at a no-break space. A text without words writes nothing.
 func (p *page) wrap(first, others, text string) {
 	write := func(line string) { p.buffer.WriteString(strings.ReplaceAll(line, noBreak, " ") + "\n") }
 	line, indent := first, true
@@ -61,5 +69,7 @@ func (p *page) wrap(first, others, text string) {
 		line += word
 		indent = false
 	}
-	write(line)
+	if !indent {
+		write(line)
+	}
 }

@@ -29,7 +29,7 @@ func (p *page) sum(req *pb.CombineRequest, res *pb.CombineResponse) {
 		if t.GetSubtract() {
 			sign = "minus"
 		}
-		rows = append(rows, []string{sign, power(t.GetSphereCylinder(), 2)})
+		rows = append(rows, []string{sign, power(t.GetSphereCylinder(), notation.Exact)})
 	}
 	p.table(append(rows,
 		[]string{"is", power(res.GetPower(), 2)},
@@ -42,9 +42,9 @@ func (p *page) sum(req *pb.CombineRequest, res *pb.CombineResponse) {
 func (p *page) forms(req *pb.ExpressRequest, res *pb.ExpressResponse) {
 	p.sources = req.GetExplain()
 	p.title("Power")
-	rows := [][]string{{"given", power(req.GetSphereCylinder(), 2)}}
+	rows := [][]string{{"given", power(req.GetSphereCylinder(), notation.Exact)}}
 	if req.HasRotationDeg() {
-		rows = append(rows, []string{"turned by", fmt.Sprintf("%s°", notation.Signed(req.GetRotationDeg(), 1))})
+		rows = append(rows, []string{"turned by", notation.Signed(req.GetRotationDeg(), 1) + "°"})
 	}
 	rows = append(rows,
 		[]string{"minus cylinder", power(res.GetMinusCylinder(), 2)},

@@ -23,13 +23,13 @@ func (p *page) end(res answer) {
 	p.notice(res.GetProvenance())
 }
 
-// given is the row of a refraction as it was read.
+// given is the row of a refraction as it was read, to its last digit.
 func given(r *pb.Refraction) []string {
 	at := "no vertex distance given"
 	if r.HasVertexDistanceMm() {
 		at = distance(r.GetVertexDistanceMm())
 	}
-	return []string{"refraction given", power(r, 2), at}
+	return []string{"refraction given", power(r, notation.Exact), at}
 }
 
 // vector is the row of a power vector.
@@ -191,5 +191,7 @@ func (p *page) notice(from *pb.Provenance) {
 		text = safety
 	}
 	p.wrap("  ", "  ", text)
-	p.wrap("  ", "  ", "(engine "+from.GetEngineVersion()+", schema "+from.GetSchemaVersion()+")")
+	if from.HasEngineVersion() {
+		p.wrap("  ", "  ", "(engine "+from.GetEngineVersion()+", schema "+from.GetSchemaVersion()+")")
+	}
 }

@@ -5,8 +5,6 @@ import (
 	"strconv"
 	"strings"
 
-	"google.golang.org/protobuf/proto"
-
 	"meniscus.example/client/notation"
 	pb "meniscus.example/proto/meniscus/v1"
 )
@@ -50,11 +48,16 @@ func plainEnum(name, prefix string) string {
 
 // mm writes a length with at least so many decimals, and up to three where it has them.
 func mm(x float64, least int) string {
-	text := strconv.FormatFloat(notation.Round(x, 3), 'f', -1, 64)
+	text := upTo(3, x)
 	if _, fraction, _ := strings.Cut(text, "."); len(fraction) < least {
 		text = notation.Decimal(x, least)
 	}
 	return text + " mm"
+}
+
+// upTo writes a number with the decimals that it has, but not more than so many.
+func upTo(decimals int, x float64) string {
+	return strconv.FormatFloat(notation.Round(x, decimals), 'f', -1, 64)
 }
 
 // distance writes a vertex distance.
@@ -88,12 +91,13 @@ func power(p notation.Power, decimals int) string {
 // order writes a power that is to be ordered, with every digit that it has.
 func order(p *pb.SphereCylinder) string {
 	const decimals = 4 // What is left beyond are the rounding errors of binary numbers.
-	q := proto.CloneOf(p)
+	q := &pb.SphereCylinder{}
 	q.SetSphereD(notation.Round(p.GetSphereD(), decimals))
 	if c := notation.Round(p.GetCylinderD(), decimals); c != 0 {
 		q.SetCylinderD(c)
-	} else {
-		q.ClearCylinderD()
+		if p.HasAxisDeg() {
+			q.SetAxisDeg(notation.Round(p.GetAxisDeg(), decimals))
+		}
 	}
 	return power(q, notation.Exact)
 }
@@ -117,14 +121,14 @@ func quantity(x float64, ucum string) string {
 	}
 }
 
-// reading writes a keratometer reading.
+// reading writes a keratometer reading as it was read, to its last digit.
 func reading(m *pb.MeridianReading) string {
 	text := "absent"
 	switch m.WhichReading() {
 	case pb.MeridianReading_RadiusMm_case:
-		text = mm(m.GetRadiusMm(), 2)
+		text = notation.Decimal(m.GetRadiusMm(), notation.Exact) + " mm"
 	case pb.MeridianReading_PowerD_case:
-		text = notation.Decimal(m.GetPowerD(), 2) + " D"
+		text = notation.Decimal(m.GetPowerD(), notation.Exact) + " D"
 	}
 	if m.HasAuxiliaryLensD() {
 		text += " with " + dioptres(m.GetAuxiliaryLensD(), 2)
