@@ -202,7 +202,9 @@ func TestHealthAndReflectionAnswer(t *testing.T) {
 		t.Errorf("%v, %v", res, err)
 	}
 	// The older version of reflection, which some tools still ask for first.
-	if _, ok := s.GRPC().GetServiceInfo()["grpc.reflection.v1alpha.ServerReflection"]; !ok {
+	g := s.GRPC()
+	defer g.Stop()
+	if _, ok := g.GetServiceInfo()["grpc.reflection.v1alpha.ServerReflection"]; !ok {
 		t.Error("reflection v1alpha is not registered")
 	}
 }
