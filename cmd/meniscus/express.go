@@ -15,8 +15,8 @@ func (a *app) express() *cobra.Command {
 	c := &cobra.Command{
 		Use:   "express POWER [--turn °]",
 		Short: "One power in all its forms",
-		Long: "express writes a power with a minus and a plus cylinder, along its meridians, and\n" +
-			"as a power vector.\n\n" + safety,
+		Long: "express writes a power with a minus and a plus cylinder, along its meridians,\n" +
+			"and as a power vector.\n\n" + safety,
 		Example: `  meniscus express "+2.00 / +5.00 x 30"
   # minus cylinder     +7.00 / -5.00 D x 120°
 

@@ -67,7 +67,7 @@ func (f *fields) origins() origins {
 func holderOf(m protoreflect.Message, path string) (protoreflect.Message, protoreflect.FieldDescriptor) {
 	name, rest, more := strings.Cut(path, ".")
 	fd := m.Descriptor().Fields().ByName(protoreflect.Name(name))
-	if !more || fd == nil {
+	if !more {
 		return m, fd
 	}
 	return holderOf(m.Mutable(fd).Message(), rest)

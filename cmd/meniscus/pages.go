@@ -44,7 +44,7 @@ func (p *page) forms(req *pb.ExpressRequest, res *pb.ExpressResponse) {
 	p.title("Power")
 	rows := [][]string{{"given", power(req.GetSphereCylinder(), notation.Exact)}}
 	if req.HasRotationDeg() {
-		rows = append(rows, []string{"turned by", notation.Signed(req.GetRotationDeg(), 1) + "°"})
+		rows = append(rows, []string{"turned by", notation.Signed(req.GetRotationDeg(), notation.Exact) + "°"})
 	}
 	rows = append(rows,
 		[]string{"minus cylinder", power(res.GetMinusCylinder(), 2)},
