@@ -6,7 +6,6 @@ import (
 	"slices"
 	"strconv"
 	"strings"
-	"sync"
 
 	"google.golang.org/protobuf/proto"
 	"google.golang.org/protobuf/reflect/protoreflect"
@@ -24,7 +23,6 @@ const mostItems = 100
 // their values, texts and lists against a greatest length. It is the same code for every message.
 type door struct {
 	plans map[protoreflect.FullName]*plan
-	walks sync.Pool // of *walk
 }
 
 // plan is what to check of one message: its fields, in the order of the schema, which is that of their descriptors' indices.
@@ -45,7 +43,7 @@ type check struct {
 
 // newDoor makes the plans of the given messages and of all that they hold.
 func newDoor(messages ...protoreflect.MessageDescriptor) *door {
-	d := &door{plans: map[protoreflect.FullName]*plan{}, walks: sync.Pool{New: newWalk}}
+	d := &door{plans: map[protoreflect.FullName]*plan{}}
 	for _, m := range messages {
 		d.plan(m)
 	}
@@ -79,62 +77,15 @@ func (d *door) plan(m protoreflect.MessageDescriptor) *plan {
 	return p
 }
 
-// check adds to v what is wrong with the request m.
+// check adds to v what is wrong with the request m. A quick look, made from the same schema, spares the most of them the plan.
 func (d *door) check(v *violations, m proto.Message) {
-	r := m.ProtoReflect()
-	p := d.plans[r.Descriptor().FullName()]
-	if p == nil {
+	if looksFine(m) {
 		return
 	}
-	w := d.walks.Get().(*walk)
-	w.plan, w.fine = p, true
-	r.Range(w.visit)
-	fine := w.fine
-	d.walks.Put(w)
-	if !fine {
+	r := m.ProtoReflect()
+	if p := d.plans[r.Descriptor().FullName()]; p != nil {
 		p.check(v, r)
 	}
-}
-
-// walk looks whether anything is wrong with a message at all, over the fields that are there and in any order: that is quicker than to
-// ask for each field in turn, which is done once something is known to be wrong.
-type walk struct {
-	plan  *plan
-	fine  bool
-	visit func(protoreflect.FieldDescriptor, protoreflect.Value) bool // look, bound once
-}
-
-func newWalk() any {
-	w := &walk{}
-	w.visit = w.look
-	return w
-}
-
-// look goes on while everything is fine.
-func (w *walk) look(f protoreflect.FieldDescriptor, value protoreflect.Value) bool {
-	c := &w.plan.fields[f.Index()]
-	if !c.list {
-		w.one(c, value)
-		return w.fine
-	}
-	list := value.List()
-	w.fine = list.Len() <= mostItems
-	for i := 0; w.fine && i < list.Len(); i++ {
-		w.one(c, list.Get(i))
-	}
-	return w.fine
-}
-
-func (w *walk) one(c *check, value protoreflect.Value) {
-	if c.message == nil {
-		problem, _ := c.problem(value)
-		w.fine = problem == ""
-		return
-	}
-	outer := w.plan
-	w.plan = c.message
-	value.Message().Range(w.visit)
-	w.plan = outer
 }
 
 // check adds what is wrong with a message. The paths of the faults begin in it; whoever holds it puts its name before them.

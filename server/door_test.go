@@ -8,6 +8,7 @@ import (
 
 	"google.golang.org/protobuf/proto"
 	"google.golang.org/protobuf/reflect/protoreflect"
+	"google.golang.org/protobuf/reflect/protoregistry"
 	"google.golang.org/protobuf/types/dynamicpb"
 
 	pb "meniscus.example/proto/meniscus/v1"
@@ -55,9 +56,26 @@ func places(m protoreflect.MessageDescriptor, prefix string, in func(protoreflec
 	}
 }
 
+// faults are the paths of what the door finds wrong with a request. The quick look, which knows the types that Go was generated for, must be of the
+// same mind as the plan.
 func faults(d *door, m protoreflect.ProtoMessage) []string {
 	var v violations
 	d.check(&v, m)
+	kind, err := protoregistry.GlobalTypes.FindMessageByName(m.ProtoReflect().Descriptor().FullName())
+	if err != nil {
+		panic(err)
+	}
+	typed := kind.New().Interface()
+	bytes, err := proto.Marshal(m)
+	if err != nil {
+		panic(err)
+	}
+	if err := proto.Unmarshal(bytes, typed); err != nil {
+		panic(err)
+	}
+	if looksFine(typed) != (v.list == nil) {
+		panic(fmt.Sprintf("the quick look at %v: %v, the plan: %v", typed, looksFine(typed), v.list))
+	}
 	var out []string
 	for _, f := range v.list {
 		out = append(out, f.Field)
