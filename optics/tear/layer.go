@@ -59,7 +59,7 @@ func (l Layer) Required(k vergence.OcularRefraction, cornea, back surface.Curvat
 	if w.Back, err = w.Cornea.Upstream(l.Apex, l.Index); err != nil {
 		return Wanted{}, err
 	}
-	w.Power = lens.BackVertexPower{PowerVector: w.Back.Sub(back.Power(step))}
+	w.Power = l.Order(w.Back, back)
 	return w, nil
 }
 
