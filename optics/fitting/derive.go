@@ -115,14 +115,11 @@ func (d *Derivation) SphereCylinder(name, symbol string, v vergence.PowerVector)
 //
 // Source: as vergence.PowerVector.Downstream.
 func (d *Derivation) Travel(name, symbol string, from, to vergence.PowerVector, gap unit.Millimetre, n unit.Index, upstream bool) {
-	q, formula := gap.ReducedMetres(n), "d/(1000*n)"
+	q, formula := gap.Reduced(n), "d/(1000*n)"
 	if upstream {
 		q, formula = -q, "-d/(1000*n)"
 	}
-	if q == 0 {
-		q = 0
-	}
-	metre := func(name string) Value { return Value{name, q + 0, "m"} }
+	metre := func(name string) Value { return Value{name, float64(q) + 0, "m"} }
 	d.step(name+", reduced distance", formula, "definition of reduced distance; negative upstream", metre("q"), lengths("d", gap), indices("n", n))
 	_, det := vergence.Gap(from, q)
 	m, x, y := dioptres("M", from.M), dioptres("J0", from.J0), dioptres("J45", from.J45)

@@ -18,6 +18,10 @@ type Millimetre float64
 // is 0.7000000000000001 µm.
 type Micrometre float64
 
+// ReducedMetre is a distance over a refractive index, d/n, in m: what a vergence changes by. It appears inside formulas only. The zero
+// value is no distance.
+type ReducedMetre float64
+
 // Degree is an angle, in degrees, counter-clockwise as the examiner sees the patient. The zero value is
 // a horizontal meridian, which is written 180. Multiples of 30 and 45 degrees have exact sines and
 // cosines where these are rational.
@@ -68,6 +72,11 @@ func (m Millimetre) String() string { return number(float64(m)) + " mm" }
 //
 // Source: definition.
 func (m Micrometre) String() string { return number(float64(m)) + " µm" }
+
+// String gives the number and the unit.
+//
+// Source: definition.
+func (q ReducedMetre) String() string { return number(float64(q)) + " m" }
 
 // String gives the number and the unit.
 //
@@ -163,10 +172,12 @@ func KeratometricRadius(p Dioptre, n Index) Millimetre {
 	return Millimetre(1000 * float64(n-1) / float64(p))
 }
 
-// ReducedMetres is the length over the index, in metres: the d/n by which a vergence changes.
+// Reduced is the length over the index, d/n.
 //
 // Source: definition of reduced distance.
-func (m Millimetre) ReducedMetres(n Index) float64 { return float64(m) / (1000 * float64(n)) }
+func (m Millimetre) Reduced(n Index) ReducedMetre {
+	return ReducedMetre(float64(m) / (1000 * float64(n)))
+}
 
 // ShapeFactor is p = 1 + Q.
 //

@@ -124,7 +124,7 @@ func TestGridValuesAreTheDecimals(t *testing.T) {
 func TestNumbersPrintTheirUnits(t *testing.T) {
 	t.Parallel()
 	for want, got := range map[string]fmt.Stringer{
-		"-4.25 D": unit.Dioptre(-4.25), "7.8 mm": unit.Millimetre(7.8), "15 µm": unit.Micrometre(15), "175°": unit.Degree(175),
+		"-4.25 D": unit.Dioptre(-4.25), "7.8 mm": unit.Millimetre(7.8), "15 µm": unit.Micrometre(15), "175°": unit.Degree(175), "0.012 m": unit.Millimetre(12).Reduced(1),
 		"1.3375": unit.Index(1.3375), "0.3375": unit.IndexDifference(0.3375), "125 1/m": unit.PerMetre(125), "0.74": unit.ShapeFactor(0.74),
 		"0 D": unit.Dioptre(math.Copysign(0, -1)), "absent": unit.Optional[unit.Dioptre]{}, "1 D": unit.Some[unit.Dioptre](1),
 		"100·10⁻¹¹ (cm²/s)(mL O2/(mL·mmHg))": unit.Permeability(100),

@@ -139,18 +139,19 @@ func (v PowerVector) Rotate(by unit.Degree) PowerVector {
 // Source: Keating 1981, Optom Vis Sci 58:810-819 (matrix effectivity, from memory); Harris 1996 (from memory).
 // The closed form is the Cayley-Hamilton inverse of a symmetric 2×2 matrix.
 func (v PowerVector) Downstream(d unit.Millimetre, n unit.Index) (PowerVector, error) {
-	return v.travel(d.ReducedMetres(n))
+	return v.travel(d.Reduced(n))
 }
 
 // Upstream is the vergence before travelling a gap: Downstream by the same gap undoes it.
 //
 // Source: as Downstream, with the gap counted negative.
 func (v PowerVector) Upstream(d unit.Millimetre, n unit.Index) (PowerVector, error) {
-	return v.travel(-d.ReducedMetres(n))
+	return v.travel(-d.Reduced(n))
 }
 
-func (v PowerVector) travel(q float64) (PowerVector, error) {
-	m, det := Gap(v, q)
+func (v PowerVector) travel(over unit.ReducedMetre) (PowerVector, error) {
+	m, det := Gap(v, over)
+	q := float64(over)
 	if !(m > 0 && det > 0) {
 		return PowerVector{}, ErrFocusInGap
 	}
@@ -165,10 +166,11 @@ func (v PowerVector) travel(q float64) (PowerVector, error) {
 }
 
 // Gap gives 1 - qM and the determinant D = (1 - qM)² - (qJ)² of I - qL, both dimensionless, for q the
-// reduced distance in metres. No focus falls inside the gap while both are above 0.
+// reduced distance. No focus falls inside the gap while both are above 0.
 //
 // Source: as Downstream.
-func Gap(v PowerVector, q float64) (mean, det float64) {
+func Gap(v PowerVector, over unit.ReducedMetre) (mean, det float64) {
+	q := float64(over)
 	x, y := float64(q*float64(v.J0)), float64(q*float64(v.J45))
 	j2 := float64(x*x) + float64(y*y)
 	mean = 1 - float64(q*float64(v.M))
