@@ -119,7 +119,7 @@ var rules = [...]Rule{
 		Code: CornealAstigmatismHigh, Severity: Advice,
 		Meaning: "the corneal astigmatism is 2.00 D or more; from 3.00 D it is a warning where the back of the lens is spherical",
 		Limit:   some(2), SevereFrom: some(3), Unit: ucumDioptre,
-		Action: "consider a toric back surface; watch movement, flexure and where the lens bears",
+		Action: "a toric back surface is the usual answer; watch movement, flexure and where the lens bears",
 		Source: "toric back from 2.00 D: Mandell; essential from 3.00 D: Bennett",
 		says: func(c Caution) string {
 			if c.Severity == Warning {
@@ -272,11 +272,11 @@ func (c *Cautions) Refraction(s vergence.SpectacleRefraction, field string) {
 	}
 }
 
-// Cornea raises the cautions of a cornea whose readings have the path field, under a lens with a toric back or
-// without.
+// Cornea raises the cautions of a cornea whose readings have the path field. Under a lens with a spherical back much
+// astigmatism is a warning; under a toric back, or without a lens, it is advice.
 //
 // Source: the rules name their own.
-func (c *Cautions) Cornea(k cornea.Cornea, field string, toricBack bool) {
+func (c *Cautions) Cornea(k cornea.Cornea, field string, sphericalBack bool) {
 	c.from(CorneaSteep, float64(k.FlatK()+k.SteepK())/2, true, field)
 	if flat := float64(k.FlatK()); flat < rules[CorneaFlat].Limit.Or(0) {
 		c.add(Caution{
@@ -286,7 +286,7 @@ func (c *Cautions) Cornea(k cornea.Cornea, field string, toricBack bool) {
 	}
 	before := c.n
 	c.from(CornealAstigmatismHigh, float64(k.Astigmatism()), false, field)
-	if toricBack && c.n > before && c.list[before].Severity == Warning {
+	if !sphericalBack && c.n > before && c.list[before].Severity == Warning {
 		c.list[before].Severity, c.list[before].Limit = rules[CornealAstigmatismHigh].Severity, rules[CornealAstigmatismHigh].Limit.Or(0)
 	}
 	c.from(MeridiansNotPerpendicular, float64(k.Skew()), true, field)
@@ -299,7 +299,7 @@ func (c *Cautions) Cornea(k cornea.Cornea, field string, toricBack bool) {
 func (r *Result) caution() {
 	c := &r.cautions
 	c.Refraction(r.Spectacle, "eye.refraction.vertex_distance_mm")
-	c.Cornea(r.Cornea, "eye.keratometry", r.Toricity.toricBack())
+	c.Cornea(r.Cornea, "eye.keratometry", !r.Toricity.toricBack())
 	over := r.Over.Power
 	c.from(ResidualAstigmatism, float64(2*over.J()), false, "over_refraction.cylinder_d")
 	c.from(ResidualSphere, float64(over.M), false, "over_refraction.sphere_d")
