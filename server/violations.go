@@ -25,34 +25,55 @@ const (
 	reasonInternal       = "INTERNAL"
 )
 
+// mostFaults is the greatest number of faults that one error lists: every value of a pair of eyes may be wrong. A status travels in the
+// header of a response, and one that is too long costs the caller the connection; a list without an end costs us the search of it.
+const mostFaults = 150
+
 // violations are the faults of one request, in the order in which they were found.
 type violations struct {
 	list []unit.FieldError
+	more bool // there are faults that the list has no room for
 }
 
 func (v *violations) add(field, problem, looksLike string) {
-	v.list = append(v.list, unit.FieldError{Field: field, Problem: problem, LooksLike: looksLike})
+	v.put(unit.FieldError{Field: field, Problem: problem, LooksLike: looksLike})
 }
 
-// has reports whether a fault is known of the field itself, of a message that holds it, or of a field that it
+func (v *violations) put(f unit.FieldError) {
+	if len(v.list) == mostFaults {
+		v.more = true
+		return
+	}
+	v.list = append(v.list, f)
+}
+
+// has reports whether a fault is known of the field itself, of a message or list that holds it, or of a field or item that it
 // holds.
 func (v *violations) has(field string) bool {
 	for i := range v.list {
-		known := v.list[i].Field
-		if known == field || strings.HasPrefix(field, known+".") || strings.HasPrefix(known, field+".") {
+		if known := v.list[i].Field; holds(known, field) || holds(field, known) {
 			return true
 		}
 	}
 	return false
 }
 
+// holds reports whether the path inner is outer, or lies within it.
+func holds(outer, inner string) bool {
+	rest, ok := strings.CutPrefix(inner, outer)
+	return ok && (rest == "" || rest[0] == '.' || rest[0] == '[')
+}
+
 // merge adds what the core found, but for fields of which a fault is known already: a number outside its limits is
 // named once.
 func (v *violations) merge(faults []error) {
 	for _, err := range faults {
+		if v.more {
+			return
+		}
 		var f *unit.FieldError
 		if errors.As(err, &f) && !v.has(f.Field) {
-			v.list = append(v.list, *f)
+			v.put(*f)
 		}
 	}
 }
@@ -73,6 +94,9 @@ func (v *violations) err() error {
 			Field:       field,
 			Description: f.Error(),
 		})
+	}
+	if v.more {
+		text = append(text, "and more, which are not listed")
 	}
 	return failure(codes.InvalidArgument, reasonInvalidFields, strings.Join(text, " | "), bad)
 }
