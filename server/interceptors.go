@@ -2,7 +2,6 @@ package server
 
 import (
 	"context"
-	"errors"
 	"log/slog"
 	"runtime/debug"
 	"time"
@@ -119,11 +118,8 @@ func streamRecover(log *slog.Logger) grpc.StreamServerInterceptor {
 
 // late is the error of a call whose caller has gone or whose deadline has passed.
 func late(ctx context.Context) error {
-	switch err := ctx.Err(); {
-	case errors.Is(err, context.DeadlineExceeded):
-		return failure(codes.DeadlineExceeded, reasonDeadline, "the deadline passed before the call was begun")
-	case err != nil:
-		return failure(codes.Canceled, reasonCancelled, "the call was cancelled before it was begun")
+	if err := ctx.Err(); err != nil {
+		return ended(err, "before it was begun")
 	}
 	return nil
 }

@@ -4,11 +4,14 @@ import (
 	"bytes"
 	"context"
 	"errors"
+	"fmt"
 	"log/slog"
+	"slices"
 	"strings"
 	"testing"
 	"time"
 
+	"google.golang.org/genproto/googleapis/rpc/errdetails"
 	"google.golang.org/grpc"
 	"google.golang.org/grpc/codes"
 	healthpb "google.golang.org/grpc/health/grpc_health_v1"
@@ -146,19 +149,34 @@ func TestEveryMethodOfTheSchemaIsAnsweredOrSaidNotToBe(t *testing.T) {
 
 func TestErrorsOfTheCoreBecomeStatuses(t *testing.T) {
 	t.Parallel()
-	for _, c := range []struct {
+	wrong, worse := &unit.FieldError{Field: "a.b", Problem: "is wrong"}, &unit.FieldError{Field: "c[1]", Problem: "is worse"}
+	cannot := &unit.ImpossibleError{Fields: []string{"a", "d"}, Problem: "cannot be", Remedy: "try b"}
+	for name, c := range map[string]struct {
 		err    error
 		code   codes.Code
 		reason string
+		fields []string
 	}{
-		{&unit.FieldError{Field: "a.b", Problem: "is wrong"}, codes.InvalidArgument, reasonInvalidFields},
-		{&unit.ImpossibleError{Fields: []string{"a"}, Problem: "cannot be", Remedy: "try b"}, codes.FailedPrecondition, reasonImpossibleLens},
-		{errors.New("secret"), codes.Internal, reasonInternal},
+		"a value":                 {wrong, codes.InvalidArgument, reasonInvalidFields, []string{"a.b"}},
+		"a wrapped value":         {fmt.Errorf("in a step: %w", wrong), codes.InvalidArgument, reasonInvalidFields, []string{"a.b"}},
+		"values":                  {errors.Join(wrong, worse), codes.InvalidArgument, reasonInvalidFields, []string{"a.b", "c[1]"}},
+		"joined twice":            {fmt.Errorf("all: %w", errors.Join(errors.Join(wrong), worse)), codes.InvalidArgument, reasonInvalidFields, []string{"a.b", "c[1]"}},
+		"no lens":                 {cannot, codes.FailedPrecondition, reasonImpossibleLens, []string{"a", "d"}},
+		"a wrapped no lens":       {fmt.Errorf("in a step: %w", cannot), codes.FailedPrecondition, reasonImpossibleLens, []string{"a", "d"}},
+		"a value comes first":     {errors.Join(cannot, wrong), codes.InvalidArgument, reasonInvalidFields, []string{"a.b"}},
+		"a caller who has gone":   {context.Canceled, codes.Canceled, reasonCancelled, nil},
+		"a deadline that is over": {fmt.Errorf("in a step: %w", context.DeadlineExceeded), codes.DeadlineExceeded, reasonDeadline, nil},
+		"a mistake of ours":       {errors.New("secret"), codes.Internal, reasonInternal, nil},
 	} {
 		err := statusFrom(c.err)
-		code, reason, _ := details(t, err)
-		if code != c.code || reason != c.reason || strings.Contains(err.Error(), "secret") {
-			t.Errorf("%v: %v", c.err, err)
+		code, reason, fields := details(t, err)
+		if code != c.code || reason != c.reason || !slices.Equal(fields, c.fields) || strings.Contains(err.Error(), "secret") {
+			t.Errorf("%s: %v names %v", name, err, fields)
+		}
+	}
+	for _, d := range status.Convert(statusFrom(cannot)).Details() {
+		if p, ok := d.(*errdetails.PreconditionFailure); ok && p.GetViolations()[0].GetDescription() != "cannot be; try b" {
+			t.Errorf("no remedy: %v", p)
 		}
 	}
 }

@@ -1,6 +1,7 @@
 package server
 
 import (
+	"context"
 	"errors"
 	"strings"
 
@@ -101,12 +102,17 @@ func (v *violations) err() error {
 	return failure(codes.InvalidArgument, reasonInvalidFields, strings.Join(text, " | "), bad)
 }
 
-// statusFrom is the status of an error of the core: an error of the caller's where it is one, else INTERNAL, which says nothing
-// of the cause.
+// statusFrom is the status of an error of the core, or of several that are joined: an error of the caller's where it is one, else
+// INTERNAL, which says nothing of the cause. Values that are wrong come before values that do not go together.
 func statusFrom(err error) error {
+	var v violations
+	for _, f := range fieldErrors(err) {
+		v.put(*f)
+	}
 	var impossible *unit.ImpossibleError
-	var field *unit.FieldError
 	switch {
+	case v.list != nil:
+		return v.err()
 	case errors.As(err, &impossible):
 		says := *impossible
 		says.Fields = nil
@@ -119,11 +125,35 @@ func statusFrom(err error) error {
 			})
 		}
 		return failure(codes.FailedPrecondition, reasonImpossibleLens, impossible.Error(), p)
-	case errors.As(err, &field):
-		v := violations{list: []unit.FieldError{*field}}
-		return v.err()
+	case errors.Is(err, context.Canceled), errors.Is(err, context.DeadlineExceeded):
+		return ended(err, "before it was answered")
 	}
 	return internal()
+}
+
+// fieldErrors are the FieldErrors in an error, those of joined errors in their order.
+func fieldErrors(err error) []*unit.FieldError {
+	switch e := err.(type) {
+	case *unit.FieldError:
+		return []*unit.FieldError{e}
+	case interface{ Unwrap() error }:
+		return fieldErrors(e.Unwrap())
+	case interface{ Unwrap() []error }:
+		var all []*unit.FieldError
+		for _, one := range e.Unwrap() {
+			all = append(all, fieldErrors(one)...)
+		}
+		return all
+	}
+	return nil
+}
+
+// ended is the status of a call whose context has ended.
+func ended(err error, when string) error {
+	if errors.Is(err, context.DeadlineExceeded) {
+		return failure(codes.DeadlineExceeded, reasonDeadline, "the deadline passed "+when)
+	}
+	return failure(codes.Canceled, reasonCancelled, "the call was cancelled "+when)
 }
 
 // internal is the status of a mistake of ours. The cause goes to the log, never to the caller.
