@@ -52,15 +52,21 @@ func dial(t testing.TB, s *Server) *grpc.ClientConn {
 		defer close(done)
 		_ = g.Serve(listener) // ends with the test
 	}()
+	t.Cleanup(func() {
+		g.Stop()
+		<-done
+	})
+	return dialListener(t, listener)
+}
+
+// dialListener connects in memory.
+func dialListener(t testing.TB, listener *bufconn.Listener) *grpc.ClientConn {
+	t.Helper()
 	conn, err := grpc.NewClient("passthrough:memory", grpc.WithTransportCredentials(insecure.NewCredentials()),
 		grpc.WithContextDialer(func(ctx context.Context, _ string) (net.Conn, error) { return listener.DialContext(ctx) }))
 	if err != nil {
 		t.Fatal(err)
 	}
-	t.Cleanup(func() {
-		conn.Close()
-		g.Stop()
-		<-done
-	})
+	t.Cleanup(func() { conn.Close() })
 	return conn
 }

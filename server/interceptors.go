@@ -133,6 +133,12 @@ func streamNotServed(srv any, ss grpc.ServerStream, info *grpc.StreamServerInfo,
 	return err
 }
 
+// unknown answers a method or a service that is not in the schema.
+func unknown(_ any, ss grpc.ServerStream) error {
+	method, _ := grpc.Method(ss.Context())
+	return notServed(method)
+}
+
 func notServed(method string) error {
 	return failure(codes.Unimplemented, reasonNotServed, method+" is not served by version "+Version)
 }

@@ -18,6 +18,7 @@ import (
 	"google.golang.org/grpc/metadata"
 	reflectionv1 "google.golang.org/grpc/reflection/grpc_reflection_v1"
 	"google.golang.org/grpc/status"
+	"google.golang.org/grpc/test/bufconn"
 
 	"go.uber.org/goleak"
 
@@ -133,11 +134,15 @@ func TestEveryMethodOfTheSchemaIsAnsweredOrSaidNotToBe(t *testing.T) {
 	if served != 7 {
 		t.Errorf("%d methods are served", served)
 	}
-	_, err := s.Call(context.Background(), "/meniscus.v1.FittingService/Nothing", func(any) error { return nil })
-	if code, reason, _ := details(t, err); code != codes.Unimplemented || reason != reasonNotServed {
-		t.Error(err)
+	conn := dial(t, s)
+	for _, name := range []string{"/meniscus.v1.FittingService/Nothing", "/nobody.v1.NobodyService/Nothing"} {
+		_, inProcess := s.Call(context.Background(), name, func(any) error { return nil })
+		wire := conn.Invoke(context.Background(), name, fitRequest(), &pb.FitResponse{})
+		if code, reason, _ := details(t, wire); code != codes.Unimplemented || reason != reasonNotServed || wire.Error() != inProcess.Error() {
+			t.Errorf("%v on the wire, %v in the process", wire, inProcess)
+		}
 	}
-	stream, err := pb.NewFittingServiceClient(dial(t, s)).FitStream(context.Background())
+	stream, err := pb.NewFittingServiceClient(conn).FitStream(context.Background())
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -188,10 +193,19 @@ func TestHealthAndReflectionAnswer(t *testing.T) {
 	ctx, cancel := context.WithTimeout(context.Background(), 10*time.Second)
 	defer cancel()
 	health := healthpb.NewHealthClient(conn)
-	for _, name := range []string{"", "meniscus.v1.FittingService", "meniscus.v1.ChartService"} {
+	for name, want := range map[string]healthpb.HealthCheckResponse_ServingStatus{
+		"":                              healthpb.HealthCheckResponse_SERVING,
+		"meniscus.v1.FittingService":    healthpb.HealthCheckResponse_SERVING,
+		"meniscus.v1.RefractionService": healthpb.HealthCheckResponse_SERVING,
+		"meniscus.v1.CorneaService":     healthpb.HealthCheckResponse_SERVING,
+		"meniscus.v1.ReferenceService":  healthpb.HealthCheckResponse_SERVING,
+		"meniscus.v1.LensService":       healthpb.HealthCheckResponse_NOT_SERVING,
+		"meniscus.v1.SeriesService":     healthpb.HealthCheckResponse_NOT_SERVING,
+		"meniscus.v1.ChartService":      healthpb.HealthCheckResponse_NOT_SERVING,
+	} {
 		res, err := health.Check(ctx, &healthpb.HealthCheckRequest{Service: name})
-		if err != nil || res.GetStatus() != healthpb.HealthCheckResponse_SERVING {
-			t.Errorf("%q: %v, %v", name, res, err)
+		if err != nil || res.GetStatus() != want {
+			t.Errorf("%q: %v, %v, want %v", name, res, err, want)
 		}
 	}
 	if _, err := health.Check(ctx, &healthpb.HealthCheckRequest{Service: "nothing"}); status.Code(err) != codes.NotFound {
@@ -225,4 +239,48 @@ func TestHealthAndReflectionAnswer(t *testing.T) {
 	if _, ok := g.GetServiceInfo()["grpc.reflection.v1alpha.ServerReflection"]; !ok {
 		t.Error("reflection v1alpha is not registered")
 	}
+}
+
+// A watch that its client never closes is told, ended with a reason, and does not hold up the stop.
+func TestAnOpenWatchDoesNotHoldUpTheStop(t *testing.T) {
+	t.Parallel()
+	s := New(Options{})
+	listener := bufconn.Listen(1 << 20)
+	g := s.GRPC()
+	served := make(chan struct{})
+	go func() {
+		defer close(served)
+		_ = g.Serve(listener) // ends with the stop
+	}()
+	conn := dialListener(t, listener)
+	ctx, cancel := context.WithTimeout(context.Background(), 50*time.Second)
+	defer cancel()
+	watches := map[string]healthpb.Health_WatchClient{}
+	for _, name := range []string{"", "meniscus.v1.FittingService"} {
+		watch, err := healthpb.NewHealthClient(conn).Watch(ctx, &healthpb.HealthCheckRequest{Service: name})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if res, err := watch.Recv(); err != nil || res.GetStatus() != healthpb.HealthCheckResponse_SERVING {
+			t.Fatalf("%q: %v, %v", name, res, err)
+		}
+		watches[name] = watch
+	}
+	const grace = 40 * time.Second
+	begin := time.Now()
+	s.Stop(g, grace)
+	if took := time.Since(begin); took > grace/2 {
+		t.Errorf("it took %v to stop", took)
+	}
+	<-served
+	for name, watch := range watches {
+		if res, err := watch.Recv(); err != nil || res.GetStatus() != healthpb.HealthCheckResponse_NOT_SERVING {
+			t.Errorf("%q: %v, %v", name, res, err)
+		}
+		_, err := watch.Recv()
+		if code, reason, _ := details(t, err); code != codes.Unavailable || reason != reasonStopping {
+			t.Errorf("%q: %v", name, err)
+		}
+	}
+	s.Stop(g, grace) // again: nothing happens
 }

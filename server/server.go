@@ -38,12 +38,15 @@ type Server struct {
 	methods  map[string]method
 	health   *health.Server
 	around   grpc.UnaryServerInterceptor
+	stopping context.Context // ends when Stop begins
+	stop     context.CancelFunc
 }
 
-// service is a description and what implements it.
+// service is a description, what implements it, and whether that does more than to say UNIMPLEMENTED.
 type service struct {
-	desc *grpc.ServiceDesc
-	impl any
+	desc   *grpc.ServiceDesc
+	impl   any
+	served bool
 }
 
 // method is a unary method and what implements it.
@@ -62,22 +65,27 @@ func New(o Options) *Server {
 	}
 	d := newDoor(requests()...)
 	s := &Server{options: o, health: health.NewServer(), methods: map[string]method{}}
+	s.stopping, s.stop = context.WithCancel(context.Background())
 	s.services = []service{
-		{&pb.FittingService_ServiceDesc, fittingService{door: d}},
-		{&pb.RefractionService_ServiceDesc, refractionService{door: d}},
-		{&pb.CorneaService_ServiceDesc, corneaService{door: d}},
-		{&pb.ReferenceService_ServiceDesc, referenceService{door: d}},
-		// In the schema, and not served yet: a caller gets UNIMPLEMENTED with a reason.
-		{&pb.LensService_ServiceDesc, pb.UnimplementedLensServiceServer{}},
-		{&pb.SeriesService_ServiceDesc, pb.UnimplementedSeriesServiceServer{}},
-		{&pb.ChartService_ServiceDesc, pb.UnimplementedChartServiceServer{}},
+		{&pb.FittingService_ServiceDesc, fittingService{door: d}, true},
+		{&pb.RefractionService_ServiceDesc, refractionService{door: d}, true},
+		{&pb.CorneaService_ServiceDesc, corneaService{door: d}, true},
+		{&pb.ReferenceService_ServiceDesc, referenceService{door: d}, true},
+		// In the schema, and not served yet: a caller gets UNIMPLEMENTED with a reason, and their health is NOT_SERVING.
+		{&pb.LensService_ServiceDesc, pb.UnimplementedLensServiceServer{}, false},
+		{&pb.SeriesService_ServiceDesc, pb.UnimplementedSeriesServiceServer{}, false},
+		{&pb.ChartService_ServiceDesc, pb.UnimplementedChartServiceServer{}, false},
 	}
 	for _, sv := range s.services {
 		for i := range sv.desc.Methods {
 			m := &sv.desc.Methods[i]
 			s.methods["/"+sv.desc.ServiceName+"/"+m.MethodName] = method{m, sv.impl}
 		}
-		s.health.SetServingStatus(sv.desc.ServiceName, healthpb.HealthCheckResponse_SERVING)
+		state := healthpb.HealthCheckResponse_NOT_SERVING
+		if sv.served {
+			state = healthpb.HealthCheckResponse_SERVING
+		}
+		s.health.SetServingStatus(sv.desc.ServiceName, state)
 	}
 	s.around = interceptor(o.Log)
 	return s
@@ -109,6 +117,7 @@ func (s *Server) GRPC(more ...grpc.ServerOption) *grpc.Server {
 		grpc.MaxRecvMsgSize(s.options.MaxMessageBytes),
 		grpc.UnaryInterceptor(s.around),
 		grpc.ChainStreamInterceptor(streamRecover(s.options.Log), streamNotServed),
+		grpc.UnknownServiceHandler(unknown),
 		grpc.KeepaliveEnforcementPolicy(enforcement),
 		grpc.KeepaliveParams(keepaliveParameters),
 		// Goroutines that stay for the next call, instead of one a call: no growth of a new stack on each.
@@ -118,7 +127,7 @@ func (s *Server) GRPC(more ...grpc.ServerOption) *grpc.Server {
 	for _, sv := range s.services {
 		g.RegisterService(sv.desc, sv.impl)
 	}
-	healthpb.RegisterHealthServer(g, s.health)
+	healthpb.RegisterHealthServer(g, endingHealth{s.health, s.stopping})
 	if !s.options.NoReflection {
 		reflection.Register(g)
 	}
@@ -126,9 +135,10 @@ func (s *Server) GRPC(more ...grpc.ServerOption) *grpc.Server {
 }
 
 // Stop ends a server that GRPC made: health says that it is not serving, calls that run are finished within the
-// grace period, then the rest is cut off. Open health watches are told and do not hold it up.
+// grace period, then the rest is cut off. Open health watches are told, and end at once.
 func (s *Server) Stop(g *grpc.Server, grace time.Duration) {
 	s.health.Shutdown()
+	s.stop()
 	done := make(chan struct{})
 	go func() {
 		g.GracefulStop()

@@ -23,6 +23,7 @@ const (
 	reasonNotServed      = "NOT_SERVED"
 	reasonDeadline       = "DEADLINE_EXCEEDED"
 	reasonCancelled      = "CANCELLED"
+	reasonStopping       = "STOPPING"
 	reasonInternal       = "INTERNAL"
 )
 
