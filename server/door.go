@@ -6,6 +6,7 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+	"unicode/utf8"
 
 	"google.golang.org/protobuf/proto"
 	"google.golang.org/protobuf/reflect/protoreflect"
@@ -13,7 +14,7 @@ import (
 	pb "meniscus.example/proto/meniscus/v1"
 )
 
-// longest is the greatest length of a text field, in bytes.
+// longest is the greatest length of a text field, in characters, whatever their script.
 const longest = 200
 
 // mostItems is the greatest number of items of a repeated field of a unary request.
@@ -158,8 +159,8 @@ func (c *check) problem(value protoreflect.Value) (problem, looksLike string) {
 			return fmt.Sprintf("is %d, not a value of %s; it has %s", value.Enum(), c.field.Enum().Name(), strings.Join(known, ", ")), ""
 		}
 	case protoreflect.StringKind:
-		if n := len(value.String()); n > longest {
-			return fmt.Sprintf("is %d bytes long, more than %d", n, longest), ""
+		if n := utf8.RuneCountInString(value.String()); n > longest {
+			return fmt.Sprintf("has %d characters, more than %d", n, longest), ""
 		}
 	}
 	return "", ""

@@ -3,6 +3,7 @@ package server
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 	"testing"
 
@@ -141,24 +142,23 @@ func TestTheDoorKnowsEnumsTextsAndLists(t *testing.T) {
 	d := newDoor(requests()...)
 	for _, request := range requests() {
 		places(request, "", func(m protoreflect.Message) protoreflect.Message { return m }, func(field protoreflect.FieldDescriptor, at place) {
-			var good, bad protoreflect.Value
+			try := func(v protoreflect.Value, want ...string) {
+				m := dynamicpb.NewMessage(request)
+				at.set(m, v)
+				if got := faults(d, m); !slices.Equal(got, want) {
+					t.Errorf("%s.%s = %v: faults on %v, want %v", request.Name(), at.path, v, got, want)
+				}
+			}
 			switch field.Kind() {
 			case protoreflect.EnumKind:
-				good, bad = protoreflect.ValueOfEnum(1), protoreflect.ValueOfEnum(99)
+				try(protoreflect.ValueOfEnum(1))
+				try(protoreflect.ValueOfEnum(99), at.path)
+				try(protoreflect.ValueOfEnum(-1), at.path)
 			case protoreflect.StringKind:
-				good, bad = protoreflect.ValueOfString(strings.Repeat("a", longest)), protoreflect.ValueOfString(strings.Repeat("a", longest+1))
-			default:
-				return
-			}
-			m := dynamicpb.NewMessage(request)
-			at.set(m, good)
-			if got := faults(d, m); got != nil {
-				t.Errorf("%s.%s: faults on %v", request.Name(), at.path, got)
-			}
-			m = dynamicpb.NewMessage(request)
-			at.set(m, bad)
-			if got := faults(d, m); fmt.Sprint(got) != fmt.Sprint([]string{at.path}) {
-				t.Errorf("%s.%s: faults on %v", request.Name(), at.path, got)
+				for _, character := range []string{"a", "é", "鏡", "👁"} {
+					try(protoreflect.ValueOfString(strings.Repeat(character, longest)))
+					try(protoreflect.ValueOfString(strings.Repeat(character, longest+1)), at.path)
+				}
 			}
 		})
 	}

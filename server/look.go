@@ -3,6 +3,8 @@
 package server
 
 import (
+	"unicode/utf8"
+
 	"google.golang.org/protobuf/proto"
 
 	pb "meniscus.example/proto/meniscus/v1"
@@ -352,7 +354,7 @@ func fineMaterial(m *pb.Material) bool {
 		}
 	}
 	if m.HasName() {
-		if x := m.GetName(); len(x) > longest {
+		if x := m.GetName(); utf8.RuneCountInString(x) > longest {
 			return false
 		}
 	}
@@ -509,7 +511,7 @@ func fineFitStreamRequest(m *pb.FitStreamRequest) bool {
 
 func fineFitStreamItem(m *pb.FitStreamItem) bool {
 	if m.HasId() {
-		if x := m.GetId(); len(x) > longest {
+		if x := m.GetId(); utf8.RuneCountInString(x) > longest {
 			return false
 		}
 	}
@@ -772,17 +774,17 @@ func fineVerifyLensRequest(m *pb.VerifyLensRequest) bool {
 
 func fineTolerance(m *pb.Tolerance) bool {
 	if m.HasField() {
-		if x := m.GetField(); len(x) > longest {
+		if x := m.GetField(); utf8.RuneCountInString(x) > longest {
 			return false
 		}
 	}
 	if m.HasUnit() {
-		if x := m.GetUnit(); len(x) > longest {
+		if x := m.GetUnit(); utf8.RuneCountInString(x) > longest {
 			return false
 		}
 	}
 	if m.HasSource() {
-		if x := m.GetSource(); len(x) > longest {
+		if x := m.GetSource(); utf8.RuneCountInString(x) > longest {
 			return false
 		}
 	}
@@ -808,7 +810,7 @@ func fineRankLensesRequest(m *pb.RankLensesRequest) bool {
 		return false
 	}
 	for _, x := range m.GetSeriesNames() {
-		if len(x) > longest {
+		if utf8.RuneCountInString(x) > longest {
 			return false
 		}
 	}
@@ -830,7 +832,7 @@ func fineRankLensesRequest(m *pb.RankLensesRequest) bool {
 
 func fineSeries(m *pb.Series) bool {
 	if m.HasName() {
-		if x := m.GetName(); len(x) > longest {
+		if x := m.GetName(); utf8.RuneCountInString(x) > longest {
 			return false
 		}
 	}
@@ -959,7 +961,7 @@ func fineCheckOrderRequest(m *pb.CheckOrderRequest) bool {
 		}
 	}
 	if m.HasSeriesName() {
-		if x := m.GetSeriesName(); len(x) > longest {
+		if x := m.GetSeriesName(); utf8.RuneCountInString(x) > longest {
 			return false
 		}
 	}

@@ -50,7 +50,7 @@ func lookSource() []byte {
 	var out bytes.Buffer
 	p := func(format string, args ...any) { fmt.Fprintf(&out, format+"\n", args...) }
 	p("// Code generated from the schema by TestTheQuickLookIsThatOfTheSchema. DO NOT EDIT.\n\npackage server\n")
-	p("import (\n\"google.golang.org/protobuf/proto\"\n\npb \"meniscus.example/proto/meniscus/v1\"\n)\n")
+	p("import (\n\"unicode/utf8\"\n\n\"google.golang.org/protobuf/proto\"\n\npb \"meniscus.example/proto/meniscus/v1\"\n)\n")
 	p("// looksFine reports that every value of a request is within what the schema allows. Of a message that it does not know, or")
 	p("// where anything is wrong, it is false: the door then says what.")
 	p("func looksFine(m proto.Message) bool {\nswitch m := m.(type) {")
@@ -76,7 +76,7 @@ func lookSource() []byte {
 					inside = append(inside, f.Message())
 					return fmt.Sprintf("!fine%s(%s)", f.Message().Name(), v)
 				case protoreflect.StringKind:
-					return fmt.Sprintf("len(%s) > longest", v)
+					return fmt.Sprintf("utf8.RuneCountInString(%s) > longest", v)
 				case protoreflect.EnumKind:
 					last := f.Enum().Values().Len() - 1
 					if f.Enum().Values().Get(last).Number() != protoreflect.EnumNumber(last) {
