@@ -38,7 +38,7 @@ func guard(ctx context.Context, log *slog.Logger, req any, info *grpc.UnaryServe
 		return nil, err
 	}
 	if res, err = handler(ctx, req); err != nil && status.Code(err) == codes.Unimplemented {
-		return nil, notServed(info.FullMethod)
+		return nil, NotServed(info.FullMethod)
 	}
 	return res, err
 }
@@ -128,7 +128,7 @@ func late(ctx context.Context) error {
 func streamNotServed(srv any, ss grpc.ServerStream, info *grpc.StreamServerInfo, handler grpc.StreamHandler) error {
 	err := handler(srv, ss)
 	if err != nil && status.Code(err) == codes.Unimplemented {
-		return notServed(info.FullMethod)
+		return NotServed(info.FullMethod)
 	}
 	return err
 }
@@ -136,9 +136,10 @@ func streamNotServed(srv any, ss grpc.ServerStream, info *grpc.StreamServerInfo,
 // unknown answers a method or a service that is not in the schema.
 func unknown(_ any, ss grpc.ServerStream) error {
 	method, _ := grpc.Method(ss.Context())
-	return notServed(method)
+	return NotServed(method)
 }
 
-func notServed(method string) error {
-	return failure(codes.Unimplemented, reasonNotServed, method+" is not served by version "+Version)
+// NotServed is the error of a method that this version does not serve; its name is as on the wire.
+func NotServed(fullMethod string) error {
+	return failure(codes.Unimplemented, reasonNotServed, fullMethod+" is not served by version "+Version)
 }

@@ -159,7 +159,7 @@ func (s *Server) Stop(g *grpc.Server, grace time.Duration) {
 func (s *Server) Call(ctx context.Context, fullMethod string, read func(any) error) (any, error) {
 	m, ok := s.methods[fullMethod]
 	if !ok {
-		return nil, notServed(fullMethod)
+		return nil, NotServed(fullMethod)
 	}
 	return m.desc.Handler(m.impl, ctx, read, s.around)
 }

@@ -30,9 +30,9 @@ func (c *Conn) Invoke(ctx context.Context, method string, args, reply any, opts 
 		return status.Error(codes.Internal, fmt.Sprintf("embedded: %T and %T are not both protobuf messages", args, reply))
 	}
 	stream := &transport{method: method}
-	if md, ok := metadata.FromOutgoingContext(ctx); ok {
-		ctx = metadata.NewIncomingContext(ctx, md.Copy())
-	}
+	// Also where there is none: what a handler that calls from here was sent itself does not go on, as it does not on a wire.
+	md, _ := metadata.FromOutgoingContext(ctx)
+	ctx = metadata.NewIncomingContext(ctx, md)
 	ctx = grpc.NewContextWithServerTransportStream(ctx, stream)
 	res, err := c.server.Call(ctx, method, func(request any) error {
 		proto.Merge(request.(proto.Message), in)
@@ -56,7 +56,7 @@ func (c *Conn) Invoke(ctx context.Context, method string, args, reply any, opts 
 
 // NewStream fails with UNIMPLEMENTED: the engine has no streams yet.
 func (c *Conn) NewStream(_ context.Context, _ *grpc.StreamDesc, method string, _ ...grpc.CallOption) (grpc.ClientStream, error) {
-	return nil, status.Error(codes.Unimplemented, method+" is a stream, which the engine in the process does not serve")
+	return nil, server.NotServed(method)
 }
 
 // transport keeps the header and trailer that a handler sets.

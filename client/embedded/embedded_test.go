@@ -75,10 +75,42 @@ func TestTheProcessAnswersAsTheWireDoes(t *testing.T) {
 			t.Errorf("%s: the request was changed", name)
 		}
 	}
-	_, errA := pb.NewChartServiceClient(embedded.New(server.Options{})).DrawFit(context.Background(), &pb.DrawFitRequest{})
+	process := embedded.New(server.Options{})
+	_, errA := pb.NewChartServiceClient(process).DrawFit(context.Background(), &pb.DrawFitRequest{})
 	_, errB := pb.NewChartServiceClient(wire).DrawFit(context.Background(), &pb.DrawFitRequest{})
 	if status.Code(errA) != codes.Unimplemented || !proto.Equal(status.Convert(errA).Proto(), status.Convert(errB).Proto()) {
 		t.Errorf("not served: %v and %v", errA, errB)
+	}
+	_, errA = pb.NewFittingServiceClient(process).FitStream(context.Background())
+	stream, err := pb.NewFittingServiceClient(wire).FitStream(context.Background())
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, errB = stream.Recv()
+	if status.Code(errA) != codes.Unimplemented || !proto.Equal(status.Convert(errA).Proto(), status.Convert(errB).Proto()) {
+		t.Errorf("a stream: %v and %v", errA, errB)
+	}
+	const nothing = "/meniscus.v1.FittingService/Nothing"
+	errA, errB = process.Invoke(context.Background(), nothing, eye(-3), &pb.FitResponse{}), wire.Invoke(context.Background(), nothing, eye(-3), &pb.FitResponse{})
+	if status.Code(errA) != codes.Unimplemented || !proto.Equal(status.Convert(errA).Proto(), status.Convert(errB).Proto()) {
+		t.Errorf("an unknown method: %v and %v", errA, errB)
+	}
+}
+
+// What somebody who calls from within a handler was sent himself stays there, as it does when he calls over a wire.
+func TestMetadataOfACallerAreNotThoseOfHisCaller(t *testing.T) {
+	t.Parallel()
+	client := pb.NewFittingServiceClient(embedded.New(server.Options{}))
+	within := metadata.NewIncomingContext(context.Background(), metadata.Pairs("x-request-id", "outer"))
+	var header metadata.MD
+	if _, err := client.Fit(within, eye(-3), grpc.Header(&header)); err != nil || len(header) != 0 {
+		t.Errorf("%v, header %v", err, header)
+	}
+	if _, err := client.Fit(metadata.AppendToOutgoingContext(within, "x-request-id", "inner"), eye(-3), grpc.Header(&header)); err != nil {
+		t.Fatal(err)
+	}
+	if id := header.Get("x-request-id"); len(id) != 1 || id[0] != "inner" {
+		t.Errorf("request id %v", id)
 	}
 }
 
