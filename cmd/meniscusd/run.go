@@ -111,6 +111,9 @@ func parse(args []string, env func(string) (string, bool), stdout io.Writer) (s 
 		return s, false, fmt.Errorf("--max-message-bytes is %d; a request can need 1024 at least", s.maxMessageBytes)
 	case s.grace < 0:
 		return s, false, fmt.Errorf("--shutdown-grace is %v; it cannot be negative", s.grace)
+	case s.listen == "":
+		// The network takes it for any port of every interface.
+		return s, false, errors.New("--listen is empty; give HOST:PORT")
 	case !s.anyInterface && !loopback(s.listen):
 		return s, false, fmt.Errorf("--listen is %s, which other machines may reach, and this version serves without encryption: "+
 			"listen on 127.0.0.1 behind something that encrypts, or say --plaintext-beyond-loopback", s.listen)
