@@ -152,6 +152,14 @@ func (c *Case) Fit(r *Result) error {
 	return nil
 }
 
+// The radii that a back optic zone can have.
+//
+// Source: definition (the limits of the schema, beyond any corneal lens).
+const (
+	shortestRadius unit.Millimetre = 4
+	longestRadius  unit.Millimetre = 14
+)
+
 // unanswerable reports an over-refraction outside what a refraction can be.
 func unanswerable(v vergence.PowerVector) bool {
 	j := v.J()
@@ -296,6 +304,13 @@ func (c *Case) design(d *Design, t Toricity, effect Effect, flat unit.Millimetre
 				Problem: fmt.Sprintf("a %v lens follows the corneal astigmatism, and this cornea has %.2f D", t, float64(c.cornea.Astigmatism())),
 				Remedy:  "a spherical or a front toric lens, or back radii that are given, would work",
 			}
+		}
+	}
+	if d.Radii.Steep < shortestRadius || d.Radii.Flat > longestRadius {
+		return &unit.ImpossibleError{
+			Fields:  []string{"lens.back_surface", "eye.keratometry"},
+			Problem: fmt.Sprintf("the back optic zone would have the radii %v and %v, outside [%v, %v]", d.Radii.Flat, d.Radii.Steep, shortestRadius, longestRadius),
+			Remedy:  "check the readings, or give the back radii",
 		}
 	}
 	var err error
